@@ -1,0 +1,1 @@
+"""Choose the resistor, or the mix of resistors, that gives a bias current its drift."""

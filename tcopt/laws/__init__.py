@@ -1,0 +1,1 @@
+"""One part and temperature: resistor and junction, stated in sympy."""

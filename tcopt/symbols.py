@@ -1,0 +1,51 @@
+"""Every symbol once: its name in formulas, its unit, its meaning.
+
+The nomenclature is plain data, so that commands which only compute need not
+load sympy. ``laws`` and ``circuits`` make their sympy symbols from it, the
+formulas that users read take their legend from it.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+__all__ = ["NOMENCLATURE", "Entry", "resistance_name"]
+
+
+@dataclass(frozen=True, slots=True)
+class Entry:
+    """One symbol: its name, its unit ('1' for a pure number) and what it means."""
+
+    name: str
+    unit: str
+    meaning: str
+
+
+def _table(*rows: tuple[str, str, str]) -> dict[str, Entry]:
+    return {name: Entry(name, unit, meaning) for name, unit, meaning in rows}
+
+
+NOMENCLATURE = _table(
+    ("T", "K", "absolute temperature"),
+    ("T_0", "K", "reference temperature"),
+    ("V_T", "V", "thermal voltage k T / q"),
+    ("I_S", "A", "saturation current of one unit of emitter area"),
+    ("V_G0", "V", "bandgap voltage, extrapolated to 0 K"),
+    ("eta", "1", "temperature exponent of the saturation current"),
+    ("N", "1", "area ratio, output transistor to input transistor"),
+    ("M", "1", "mirror ratio, input-side current to output-side current"),
+    ("I_in", "A", "current of the input transistor"),
+    ("I_core", "A", "current of the PTAT core"),
+    ("I_out", "A", "output current"),
+    ("I_given", "A", "current forced into the input"),
+    ("V_CC", "V", "supply voltage"),
+    ("V_ref", "V", "reference voltage"),
+    ("TC1", "1/K", "first-order temperature coefficient of a resistance"),
+    ("TC2", "1/K^2", "second-order temperature coefficient of a resistance"),
+)
+"""Symbols that more than one place uses; a resistor slot names its own (`resistance_name`)."""
+
+
+def resistance_name(slot: str) -> str:
+    """Return the symbol of the resistance in a slot: ``output`` is ``R_output``, in ohm."""
+    return f"R_{slot}"
