@@ -1,0 +1,1 @@
+"""Numerics made from the statements."""

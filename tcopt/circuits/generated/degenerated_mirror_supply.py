@@ -1,0 +1,75 @@
+"""degenerated mirror, input: supply.
+
+Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
+"""
+
+from typing import Any
+
+from numpy import exp, log
+
+from scipy.special import wrightomega
+
+UNKNOWNS = ('I_in', 'I_out')
+QUANTITIES = ('N', 'R_feed', 'R_input', 'R_output', 'V_CC', 'V_T', 'log_I_S')
+
+
+def closed_form(N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
+    """Return the currents [A]."""
+    log_free = V_CC/V_T + log_I_S
+    share = (R_feed + R_input)/V_T
+    log_I_in = log_free - wrightomega(log(share) + log_free)
+    I_in = exp(log_I_in)
+    log_free = I_in*R_input/V_T + log_I_in + log(N)
+    share = R_output/V_T
+    log_I_out = log_free - wrightomega(log(share) + log_free)
+    I_out = exp(log_I_out)
+    return (I_in, I_out)
+
+
+def partials(log_I_in: Any, log_I_out: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
+    """Return the loops, their partials by log current, and by log quantity."""
+    x0 = exp(log_I_in)
+    x1 = R_feed*x0
+    x2 = R_input*x0
+    x3 = V_T*(-log_I_S + log_I_in) + x2
+    x4 = R_output*exp(log_I_out)
+    x5 = -x4
+    x6 = log(N)
+    x7 = V_T + x2
+    x8 = V_T*log_I_in
+    return (
+        (V_CC - x1 - x3, -V_T*(-log_I_S + log_I_out - x6) + x3 + x5),
+        ((-x1 - x7, 0), (x7, -V_T - x4)),
+        ((0, -x1, -x2, 0, V_CC, V_T*log_I_S - x8, V_T), (V_T, 0, x2, x5, 0, -V_T*log_I_out + V_T*x6 + x8, 0)),
+    )
+
+
+def need_feed(I_out: Any, N: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
+    """Return the needed resistance [ohm]."""
+    log_I_out = log(I_out)
+    log_free = I_out*R_output/V_T + log_I_out - log(N)
+    share = R_input/V_T
+    log_I_in = log_free - wrightomega(log(share) + log_free)
+    I_in = exp(log_I_in)
+    return -(I_in*R_input - V_CC - V_T*log_I_S + V_T*log_I_in)/I_in
+
+
+def need_input(I_out: Any, N: Any, R_feed: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
+    """Return the needed resistance [ohm]."""
+    log_I_out = log(I_out)
+    I_in = -(I_out*R_output - V_CC - V_T*log_I_S + V_T*log_I_out - V_T*log(N))/R_feed
+    log_I_in = log(I_in)
+    return -(I_in*R_feed - V_CC - V_T*log_I_S + V_T*log_I_in)/I_in
+
+
+def need_output(I_out: Any, N: Any, R_feed: Any, R_input: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
+    """Return the needed resistance [ohm]."""
+    log_I_out = log(I_out)
+    log_free = V_CC/V_T + log_I_S
+    share = (R_feed + R_input)/V_T
+    log_I_in = log_free - wrightomega(log(share) + log_free)
+    I_in = exp(log_I_in)
+    return -(-I_in*R_input - V_T*log_I_in + V_T*log_I_out - V_T*log(N))/I_out
+
+
+NEEDS = {"feed": need_feed, "input": need_input, "output": need_output}
