@@ -87,7 +87,8 @@ def circuit_module(circuit: Circuit, feed: str) -> str:
     """Return the source of one topology with one kind of input."""
     terms = Terms()
     loops = statement_of(circuit, feed)
-    residuals = [loop.residual for loop in loops]
+    # expanded, so that what cancels (I_S between two junctions) is not asked for
+    residuals = [sp.expand(sp.expand_log(sp.expand(loop.residual), force=True)) for loop in loops]
     currents = [terms.symbol(name) for name in circuit.unknowns]
     quantities = _quantities(residuals, set(currents))
     roots = forward(loops)

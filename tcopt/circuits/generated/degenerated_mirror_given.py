@@ -10,10 +10,10 @@ from numpy import exp, log
 from scipy.special import wrightomega
 
 UNKNOWNS = ('I_in', 'I_out')
-QUANTITIES = ('I_given', 'N', 'R_input', 'R_output', 'V_T', 'log_I_S')
+QUANTITIES = ('I_given', 'N', 'R_input', 'R_output', 'V_T')
 
 
-def closed_form(I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, log_I_S: Any) -> Any:
+def closed_form(I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any) -> Any:
     """Return the currents [A]."""
     I_in = I_given
     log_I_in = log(I_in)
@@ -24,21 +24,21 @@ def closed_form(I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, log
     return (I_in, I_out)
 
 
-def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, log_I_S: Any) -> Any:
+def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
     x0 = exp(log_I_in)
     x1 = R_input*x0
     x2 = R_output*exp(log_I_out)
     x3 = -x2
-    x4 = log(N)
+    x4 = V_T*log_I_in - V_T*log_I_out + V_T*log(N)
     return (
-        (-I_given + x0, V_T*(-log_I_S + log_I_in) - V_T*(-log_I_S + log_I_out - x4) + x1 + x3),
+        (-I_given + x0, x1 + x3 + x4),
         ((x0, 0), (V_T + x1, -V_T - x2)),
-        ((-I_given, 0, 0, 0, 0, 0), (0, V_T, x1, x3, V_T*log_I_in - V_T*log_I_out + V_T*x4, 0)),
+        ((-I_given, 0, 0, 0, 0), (0, V_T, x1, x3, x4)),
     )
 
 
-def need_input(I_out: Any, I_given: Any, N: Any, R_output: Any, V_T: Any, log_I_S: Any) -> Any:
+def need_input(I_out: Any, I_given: Any, N: Any, R_output: Any, V_T: Any) -> Any:
     """Return the needed resistance [ohm]."""
     log_I_out = log(I_out)
     I_in = I_given
@@ -46,7 +46,7 @@ def need_input(I_out: Any, I_given: Any, N: Any, R_output: Any, V_T: Any, log_I_
     return (I_out*R_output - V_T*log_I_in + V_T*log_I_out - V_T*log(N))/I_in
 
 
-def need_output(I_out: Any, I_given: Any, N: Any, R_input: Any, V_T: Any, log_I_S: Any) -> Any:
+def need_output(I_out: Any, I_given: Any, N: Any, R_input: Any, V_T: Any) -> Any:
     """Return the needed resistance [ohm]."""
     log_I_out = log(I_out)
     I_in = I_given

@@ -28,19 +28,18 @@ def closed_form(N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T
 
 def partials(log_I_in: Any, log_I_out: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
-    x0 = exp(log_I_in)
-    x1 = R_feed*x0
-    x2 = R_input*x0
-    x3 = V_T*(-log_I_S + log_I_in) + x2
+    x0 = V_T*log_I_in
+    x1 = exp(log_I_in)
+    x2 = R_feed*x1
+    x3 = R_input*x1
     x4 = R_output*exp(log_I_out)
     x5 = -x4
-    x6 = log(N)
-    x7 = V_T + x2
-    x8 = V_T*log_I_in
+    x6 = -V_T*log_I_out + V_T*log(N) + x0
+    x7 = V_T + x3
     return (
-        (V_CC - x1 - x3, -V_T*(-log_I_S + log_I_out - x6) + x3 + x5),
-        ((-x1 - x7, 0), (x7, -V_T - x4)),
-        ((0, -x1, -x2, 0, V_CC, V_T*log_I_S - x8, V_T), (V_T, 0, x2, x5, 0, -V_T*log_I_out + V_T*x6 + x8, 0)),
+        (V_CC + V_T*log_I_S - x0 - x2 - x3, x3 + x5 + x6),
+        ((-x2 - x7, 0), (x7, -V_T - x4)),
+        ((0, -x2, -x3, 0, V_CC, V_T*log_I_S - x0, V_T), (V_T, 0, x3, x5, 0, x6, 0)),
     )
 
 

@@ -8,10 +8,10 @@ from typing import Any
 from numpy import exp, log
 
 UNKNOWNS = ('I_in', 'I_out')
-QUANTITIES = ('I_given', 'N', 'R_drop', 'V_T', 'log_I_S')
+QUANTITIES = ('I_given', 'N', 'R_drop', 'V_T')
 
 
-def closed_form(I_given: Any, N: Any, R_drop: Any, V_T: Any, log_I_S: Any) -> Any:
+def closed_form(I_given: Any, N: Any, R_drop: Any, V_T: Any) -> Any:
     """Return the currents [A]."""
     I_in = I_given
     log_I_in = log(I_in)
@@ -21,20 +21,21 @@ def closed_form(I_given: Any, N: Any, R_drop: Any, V_T: Any, log_I_S: Any) -> An
     return (I_in, I_out)
 
 
-def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, log_I_S: Any) -> Any:
+def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
     x0 = exp(log_I_in)
-    x1 = R_drop*x0
-    x2 = log(N)
-    x3 = -V_T
+    x1 = V_T*log_I_out
+    x2 = R_drop*x0
+    x3 = log(N)
+    x4 = -V_T
     return (
-        (-I_given + x0, V_T*(-log_I_S + log_I_in) - V_T*(-log_I_S + log_I_out - x2) - x1),
-        ((x0, 0), (-x1 - x3, x3)),
-        ((-I_given, 0, 0, 0, 0), (0, V_T, -x1, V_T*log_I_in - V_T*log_I_out + V_T*x2, 0)),
+        (-I_given + x0, V_T*log_I_in + V_T*x3 - x1 - x2),
+        ((x0, 0), (-x2 - x4, x4)),
+        ((-I_given, 0, 0, 0), (0, V_T, -x2, V_T*log_I_in + V_T*x3 - x1)),
     )
 
 
-def need_drop(I_out: Any, I_given: Any, N: Any, V_T: Any, log_I_S: Any) -> Any:
+def need_drop(I_out: Any, I_given: Any, N: Any, V_T: Any) -> Any:
     """Return the needed resistance [ohm]."""
     log_I_out = log(I_out)
     I_in = I_given

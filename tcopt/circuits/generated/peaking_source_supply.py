@@ -29,17 +29,18 @@ def closed_form(N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, log_I_S: 
 
 def partials(log_I_in: Any, log_I_out: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
-    x0 = exp(log_I_in)
-    x1 = R_feed*x0
-    x2 = V_T*(-log_I_S + log_I_in)
-    x3 = R_drop*x0
-    x4 = log(N)
-    x5 = -V_T
-    x6 = V_T*log_I_in
+    x0 = V_T*log_I_in
+    x1 = exp(log_I_in)
+    x2 = R_feed*x1
+    x3 = V_T*log_I_out
+    x4 = R_drop*x1
+    x5 = -x0
+    x6 = log(N)
+    x7 = -V_T
     return (
-        (V_CC - x1 - x2, -V_T*(-log_I_S + log_I_out - x4) + x2 - x3),
-        ((-V_T - x1, 0), (-x3 - x5, x5)),
-        ((0, 0, -x1, V_CC, V_T*log_I_S - x6, V_T), (V_T, -x3, 0, 0, -V_T*log_I_out + V_T*x4 + x6, 0)),
+        (V_CC + V_T*log_I_S - x0 - x2, V_T*x6 - x3 - x4 - x5),
+        ((-V_T - x2, 0), (-x4 - x7, x7)),
+        ((0, 0, -x2, V_CC, V_T*log_I_S + x5, V_T), (V_T, -x4, 0, 0, V_T*x6 + x0 - x3, 0)),
     )
 
 

@@ -8,29 +8,27 @@ from typing import Any
 from numpy import exp, log
 
 UNKNOWNS = ('I_out',)
-QUANTITIES = ('M', 'N', 'R_core', 'V_T', 'log_I_S')
+QUANTITIES = ('M', 'N', 'R_core', 'V_T')
 
 
-def closed_form(M: Any, N: Any, R_core: Any, V_T: Any, log_I_S: Any) -> Any:
+def closed_form(M: Any, N: Any, R_core: Any, V_T: Any) -> Any:
     """Return the currents [A]."""
     I_out = V_T*(log(M) + log(N))/R_core
     return (I_out,)
 
 
-def partials(log_I_out: Any, M: Any, N: Any, R_core: Any, V_T: Any, log_I_S: Any) -> Any:
+def partials(log_I_out: Any, M: Any, N: Any, R_core: Any, V_T: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
-    x0 = R_core*exp(log_I_out)
-    x1 = log(M)
-    x2 = log(N)
-    x3 = -x0
+    x0 = -R_core*exp(log_I_out)
+    x1 = V_T*log(M) + V_T*log(N)
     return (
-        (V_T*(-log_I_S + log_I_out + x1) - V_T*(-log_I_S + log_I_out - x2) - x0,),
-        ((x3,),),
-        ((V_T, V_T, x3, V_T*x1 + V_T*x2, 0),),
+        (x0 + x1,),
+        ((x0,),),
+        ((V_T, V_T, x0, x1),),
     )
 
 
-def need_core(I_out: Any, M: Any, N: Any, V_T: Any, log_I_S: Any) -> Any:
+def need_core(I_out: Any, M: Any, N: Any, V_T: Any) -> Any:
     """Return the needed resistance [ohm]."""
     log_I_out = log(I_out)
     return -(-V_T*log(M) - V_T*log(N))/I_out

@@ -24,19 +24,17 @@ def closed_form(M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, log_I_S: Any
 def partials(log_I_core: Any, log_I_out: Any, M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
     x0 = exp(log_I_core)
-    x1 = R_core*x0
-    x2 = log(M)
-    x3 = -V_T*(-log_I_S + log_I_core + x2)
-    x4 = log(N)
-    x5 = exp(log_I_out)
-    x6 = -x1
-    x7 = R_base*x0
-    x8 = -R_base*x5
-    x9 = V_T*x2
+    x1 = -R_core*x0
+    x2 = V_T*log(M)
+    x3 = V_T*log(N) + x2
+    x4 = R_base*x0
+    x5 = -R_base*exp(log_I_out)
+    x6 = x4 + x5
+    x7 = -V_T*log_I_S + V_T*log_I_core + x2
     return (
-        (-V_T*(-log_I_S + log_I_core - x4) - x1 - x3, -R_base*(-x0 + x5) - x3),
-        ((x6, 0), (V_T + x7, x8)),
-        ((V_T, V_T, 0, x6, V_T*x4 + x9, 0), (V_T, 0, x7 + x8, 0, -V_T*log_I_S + V_T*log_I_core + x9, -V_T)),
+        (x1 + x3, x6 + x7),
+        ((x1, 0), (V_T + x4, x5)),
+        ((V_T, V_T, 0, x1, x3, 0), (V_T, 0, x6, 0, x7, -V_T)),
     )
 
 

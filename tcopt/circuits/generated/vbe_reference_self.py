@@ -25,11 +25,12 @@ def closed_form(R_base: Any, V_T: Any, log_I_S: Any) -> Any:
 def partials(log_I_out: Any, R_base: Any, V_T: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by log current, and by log quantity."""
     x0 = R_base*exp(log_I_out)
-    x1 = -V_T
+    x1 = V_T*log_I_S - V_T*log_I_out
+    x2 = -V_T
     return (
-        (V_T*(-log_I_S + log_I_out) - x0,),
-        ((-x0 - x1,),),
-        ((-x0, -V_T*log_I_S + V_T*log_I_out, x1),),
+        (-x0 - x1,),
+        ((-x0 - x2,),),
+        ((-x0, -x1, x2),),
     )
 
 
