@@ -1,0 +1,191 @@
+"""A finished design at its temperatures: from a study's data to currents, slopes and causes.
+
+This is where the parts of a design (materials, ratios, input) become the
+quantities of a circuit, so every figure that is reported passes through here.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from functools import cached_property
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
+from tcopt.errors import NoSolutionError
+from tcopt.laws.numbers import (
+    log_saturation_current,
+    log_saturation_slope,
+    resistance_ratio,
+    resistance_ratio_slope,
+    thermal_voltage,
+)
+from tcopt.solve import Array, Numerics, currents, needed_resistance, numerics, sensitivities
+from tcopt.symbols import resistance_name
+
+if TYPE_CHECKING:
+    from tcopt.study.model import Material, Part, Study
+
+__all__ = ["Choices", "Mix", "Operation", "celsius"]
+
+
+def celsius(temperature: float) -> str:
+    """Return a temperature [K] as text in degC, for messages."""
+    return f"{temperature - 273.15:.4g} degC"
+
+
+@dataclass(frozen=True)
+class Mix:
+    """Resistors in one slot: parts joined in series or in parallel."""
+
+    parts: tuple[Part, ...]
+    join: str = "series"
+
+    def resistance(self, temperature: ArrayLike) -> Array:
+        """Return the resistance [ohm] at temperatures [K]."""
+        each = [part.value * resistance_ratio(part.material, temperature) for part in self.parts]
+        if self.join == "series":
+            return np.asarray(sum(each))
+        return np.asarray(1 / sum(1 / R for R in each))
+
+    def slopes(self, temperature: Array) -> dict[tuple[str, str], Array]:
+        """Return ``d ln R/dT`` [1/K], split by material and by 'TC1' and 'TC2'.
+
+        A part weighs by its share: of the resistance in series, of the
+        conductance in parallel.
+        """
+        total = self.resistance(temperature)
+        found: dict[tuple[str, str], Array] = {}
+        for part in self.parts:
+            material = part.material
+            R = part.value * resistance_ratio(material, temperature)
+            share = R / total if self.join == "series" else total / R
+            first = material.tc1 * part.value / R * share
+            both = resistance_ratio_slope(material, temperature) * part.value / R * share
+            for name, slope in (("TC1", first), ("TC2", both - first)):
+                key = (material.name, name)
+                found[key] = found.get(key, 0) + slope
+        return found
+
+    @property
+    def total_value(self) -> float:
+        """Return what has to be drawn or ordered in all: the sum of the parts' values [ohm]."""
+        return sum(part.value for part in self.parts)
+
+
+@dataclass(frozen=True)
+class Choices:
+    """One value for everything that a circuit lets choose, besides its resistors."""
+
+    area_ratio: float = 1.0
+    mirror_ratio: float = 1.0
+    input_current: float | None = None
+
+
+@dataclass(frozen=True)
+class Operation:
+    """A study's circuit with one choice of ratios and input, and a mix in each slot.
+
+    ``mixes`` may leave out slots that are still open; then only `needed` and
+    `quantities` of the others are to be had.
+    """
+
+    study: Study
+    choices: Choices
+    mixes: Mapping[str, Mix] = field(default_factory=dict)
+
+    @cached_property
+    def circuit(self) -> Numerics:
+        """The numerics of the study's circuit."""
+        return numerics(self.study.circuit.topology, self.study.circuit.feed)
+
+    def quantities(self, temperature: ArrayLike) -> dict[str, Array]:
+        """Return the circuit's quantities at temperatures [K], shorts and absent ones included."""
+        T = np.asarray(temperature, dtype=float)
+        made = self.study.circuit
+        found: dict[str, Array] = {
+            "V_T": thermal_voltage(T),
+            "N": np.asarray(self.choices.area_ratio),
+            "M": np.asarray(self.choices.mirror_ratio),
+        }
+        if made.transistor is not None:
+            found["log_I_S"] = log_saturation_current(made.transistor, T)
+        d = T - self.study.range.reference
+        if self.choices.input_current is not None and made.feed == GIVEN:
+            ratio = 1 + made.input_tc1 * d + made.input_tc2 * d**2
+            found["I_given"] = self.choices.input_current * ratio
+        if made.feed == SUPPLY and made.supply is not None:
+            found["V_CC"] = np.asarray(made.supply)
+        if made.reference_voltage is not None:
+            ratio = 1 + made.reference_tc1 * d + made.reference_tc2 * d**2
+            found["V_ref"] = made.reference_voltage * ratio
+        for slot in CIRCUITS[made.topology].slots_for(made.feed):
+            if slot.name in self.mixes:
+                found[resistance_name(slot.name)] = self.mixes[slot.name].resistance(T)
+            elif slot.name not in self.study.resistors:
+                found[resistance_name(slot.name)] = np.asarray(0.0)
+        return found
+
+    def currents(self, temperature: ArrayLike) -> dict[str, Array]:
+        """Return all currents [A] at temperatures [K].
+
+        Raises
+        ------
+        NoSolutionError
+            Where the circuit has none, with the temperature.
+        """
+        T = np.asarray(temperature, dtype=float)
+        found = currents(self.circuit, self.quantities(T))
+        for name, current in found.items():
+            bad = ~((current > 0) & np.isfinite(current))
+            if bad.any():
+                where = np.broadcast_to(T, bad.shape)[bad].flat[0]
+                raise NoSolutionError(
+                    f"{self.study.circuit.topology}: no solution at {celsius(float(where))} "
+                    f"({name} would be {np.asarray(current)[bad].flat[0]:.4g} A); accepted: a "
+                    "design in which every current is positive over the whole range"
+                )
+        return {name: np.broadcast_to(I, T.shape) for name, I in found.items()}
+
+    def output(self, temperature: ArrayLike) -> Array:
+        """Return the output current [A] at temperatures [K]."""
+        return self.currents(temperature)[self.circuit.unknowns[-1]]
+
+    def needed(self, slot: str, output: ArrayLike, temperature: ArrayLike) -> Array:
+        """Return the resistance [ohm] that an open slot needs for this output [A]."""
+        return needed_resistance(self.circuit, slot, output, self.quantities(temperature))
+
+    def sensitivities(self, temperature: ArrayLike) -> dict[str, Array]:
+        """Return ``d ln I_out/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`)."""
+        T = np.asarray(temperature, dtype=float)
+        return sensitivities(self.circuit, self.quantities(T), self.currents(T))
+
+    def causes(self, temperature: ArrayLike) -> dict[str, Array]:
+        """Return the output's local temperature coefficient [1/K], split into its causes.
+
+        Each cause is a sensitivity times the slope of its quantity; the sum is
+        ``(dI_out/dT)/I_out`` exactly, by the chain rule.
+        """
+        T = np.atleast_1d(np.asarray(temperature, dtype=float))
+        by_quantity = self.sensitivities(T)
+        made = self.study.circuit
+        d = T - self.study.range.reference
+        slopes: dict[tuple[str, str], Array] = {("V_T", "thermal voltage"): 1 / T}
+        if "log_I_S" in by_quantity and made.transistor is not None:
+            slopes["log_I_S", "junction law"] = log_saturation_slope(made.transistor, T)
+        for symbol, cause, tc1, tc2 in (
+            ("I_given", "input current", made.input_tc1, made.input_tc2),
+            ("V_ref", "reference voltage", made.reference_tc1, made.reference_tc2),
+        ):
+            slopes[symbol, cause] = (tc1 + 2 * tc2 * d) / (1 + tc1 * d + tc2 * d**2)
+        for slot, mix in self.mixes.items():
+            for (material, order), slope in mix.slopes(T).items():
+                slopes[resistance_name(slot), f"{order} of {material} in {slot}"] = slope
+        return {
+            cause: np.broadcast_to(by_quantity[symbol] * slope, T.shape)
+            for (symbol, cause), slope in slopes.items()
+            if symbol in by_quantity
+        }
