@@ -16,7 +16,7 @@ import numpy as np
 from numpy.polynomial import Chebyshev
 
 from tcopt.errors import NoSolutionError
-from tcopt.solve import Array
+from tcopt.arrays import Array
 
 __all__ = ["Drift", "Extreme", "drift_of", "extreme_points"]
 

@@ -14,6 +14,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import ArrayLike
 
+from tcopt.arrays import Array
 from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
 from tcopt.errors import NoSolutionError
 from tcopt.laws.numbers import (
@@ -23,7 +24,7 @@ from tcopt.laws.numbers import (
     resistance_ratio_slope,
     thermal_voltage,
 )
-from tcopt.solve import Array, Numerics, currents, needed_resistance, numerics, sensitivities
+from tcopt.solve import Numerics, currents, needed_resistance, numerics, sensitivities
 from tcopt.symbols import resistance_name
 
 if TYPE_CHECKING:

@@ -15,14 +15,14 @@ from types import MappingProxyType
 from typing import Any
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import ArrayLike
 
+from tcopt.arrays import Array
 from tcopt.circuits import CIRCUITS, module_name
 from tcopt.symbols import resistance_name
 
-__all__ = ["Array", "Numerics", "currents", "needed_resistance", "numerics", "sensitivities"]
+__all__ = ["Numerics", "currents", "needed_resistance", "numerics", "sensitivities"]
 
-Array = NDArray[np.float64]
 Quantities = Mapping[str, ArrayLike]
 
 

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, TypeVar
 import numpy as np
 
 from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope
-from tcopt.solve import Array
+from tcopt.arrays import Array
 
 if TYPE_CHECKING:
     from tcopt.study.model import Target

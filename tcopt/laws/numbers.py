@@ -10,7 +10,7 @@ from scipy.constants import e as ELEMENTARY_CHARGE
 from scipy.constants import k as BOLTZMANN
 
 from tcopt.laws import generated
-from tcopt.solve import Array
+from tcopt.arrays import Array
 
 __all__ = [
     "VOLT_PER_KELVIN",

@@ -1,0 +1,86 @@
+"""What `design` answers: the ranked designs, the bound beside them, and the point that was needed."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from tcopt.assess import Assessment
+
+if TYPE_CHECKING:
+    from tcopt.study.model import Study
+
+__all__ = ["Bound", "DesignResult", "NeededPoint", "PlainMirror"]
+
+
+@dataclass(frozen=True)
+class PlainMirror:
+    """What a mirror without resistors in its emitters would take for the same output.
+
+    Attributes
+    ----------
+    input_current : the input it needs, ``I_out/N`` [A]
+    feed_resistance : the resistor from the supply to its input [ohm]; None without a supply
+    """
+
+    input_current: float
+    feed_resistance: float | None
+
+
+@dataclass(frozen=True)
+class Bound:
+    """The best deviation that any mix of the menu, of any number of pieces, can reach.
+
+    Attributes
+    ----------
+    deviation : smallest ``max |I/I_target - 1|`` [1]
+    proven : True if it is the optimum of the linear program; False if it is the best
+        found by a search over two slots at once, which has no proof
+    """
+
+    deviation: float
+    proven: bool
+
+
+@dataclass(frozen=True)
+class NeededPoint:
+    """What the perfect resistor in a slot would have, about the study's reference.
+
+    Attributes
+    ----------
+    resistance : at the reference [ohm]
+    tc1, tc2 : [1/K], [1/K^2]
+    """
+
+    resistance: float
+    tc1: float
+    tc2: float
+
+
+@dataclass(frozen=True)
+class DesignResult:
+    """What `design` found.
+
+    Attributes
+    ----------
+    study : the question
+    designs : best first; each from the full solution of its rounded values
+    plain_mirrors : beside each design; None where the circuit is no mirror
+    bound : no mix of the menu does better
+    needed : slot -> the perfect resistor, with the winner's choices
+    examined, skipped : combinations solved, and ruled out by the bound without solving
+    """
+
+    study: Study
+    designs: tuple[Assessment, ...]
+    plain_mirrors: tuple[PlainMirror | None, ...]
+    bound: Bound
+    needed: Mapping[str, NeededPoint]
+    examined: int
+    skipped: int
+
+    @property
+    def winner(self) -> Assessment:
+        """The best design."""
+        return self.designs[0]
