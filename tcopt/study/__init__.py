@@ -1,0 +1,25 @@
+"""The one gate for input: TOML files to typed, frozen studies in SI, and back."""
+
+from tcopt.study.choices import Choice, Span
+from tcopt.study.circuit import CircuitChoices
+from tcopt.study.load import load_process, load_study
+from tcopt.study.process import BaseEmitter, Material, Process, Transistor
+from tcopt.study.question import (
+    GRADES,
+    FixedSlot,
+    Limit,
+    OpenSlot,
+    Part,
+    Search,
+    Target,
+    TemperatureRange,
+)
+from tcopt.study.start import write_first_study
+from tcopt.study.study import Study
+from tcopt.study.write import study_text
+
+__all__ = [
+    "GRADES", "BaseEmitter", "Choice", "CircuitChoices", "FixedSlot", "Limit", "Material",
+    "OpenSlot", "Part", "Process", "Search", "Span", "Study", "Target", "TemperatureRange",
+    "Transistor", "load_process", "load_study", "study_text", "write_first_study",
+]  # fmt: skip

@@ -1,0 +1,134 @@
+"""What a field takes: its unit, its bounds, and the words that say so, each stated once."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable, Hashable
+from dataclasses import dataclass
+from typing import Annotated, TypeVar
+
+from pydantic import BeforeValidator
+from pydantic_core import PydanticCustomError
+
+from tcopt.units import accepted_quantity, parse, shown
+
+__all__ = [
+    "Check", "Current", "Curvature", "Fraction", "Name", "Resistance", "Slope", "Temperature",
+    "Text", "Title", "Voltage", "quantity", "refusal", "whole", "without_repeats", "words",
+]  # fmt: skip
+
+T = TypeVar("T")
+_NAME = re.compile(r"\w[\w .+-]*")
+_LONGEST_NAME, _LONGEST_LINE = 60, 200
+
+
+def refusal(found: str, accepted: str, key: str = "") -> PydanticCustomError:
+    """Return the error that a validator raises; ``key`` is the path below the validated value."""
+    context = {"found": found, "accepted": accepted, "key": key}
+    return PydanticCustomError("refused", "found {found}; accepted: {accepted}", context)
+
+
+@dataclass(frozen=True, slots=True)
+class Check(BeforeValidator):
+    """A check of the value as written, with the words for what it accepts."""
+
+    accepted: str = ""
+
+
+def quantity(
+    unit: str,
+    accepted: str | None = None,
+    *,
+    above: float | None = None,
+    at_least: float | None = None,
+    below: float | None = None,
+) -> Check:
+    """Return the check of a quantity: text with its unit, or a bare number in SI."""
+    words_for_it = accepted or accepted_quantity(unit)
+    limits = [
+        f"{word} {limit:g}{'' if unit == '1' else ' ' + unit}"
+        for word, limit in (("above", above), ("at least", at_least), ("below", below))
+        if limit is not None
+    ]
+    if limits:
+        words_for_it = f"{words_for_it}; {' and '.join(limits)}"
+
+    def check(value: object) -> float:
+        try:
+            number = parse(value, unit, words_for_it)
+        except ValueError:
+            raise refusal(shown(value), words_for_it) from None
+        if (
+            (above is not None and number <= above)
+            or (at_least is not None and number < at_least)
+            or (below is not None and number >= below)
+        ):
+            raise refusal(shown(value), words_for_it)
+        return number
+
+    return Check(check, accepted=words_for_it)
+
+
+def whole(low: int, high: int) -> Check:
+    """Return the check of a whole number from low to high."""
+    accepted = f"a whole number from {low} to {high}"
+
+    def check(value: object) -> int:
+        if isinstance(value, bool) or not isinstance(value, int) or not low <= value <= high:
+            raise refusal(shown(value), accepted)
+        return value
+
+    return Check(check, accepted=accepted)
+
+
+def words(*choices: str) -> Check:
+    """Return the check of one word of several."""
+    accepted = ", ".join(repr(choice) for choice in choices)
+
+    def check(value: object) -> str:
+        if not isinstance(value, str) or value not in choices:
+            raise refusal(shown(value), accepted)
+        return value
+
+    return Check(check, accepted=accepted)
+
+
+def _text(pattern: re.Pattern[str] | None, longest: int, empty: bool, accepted: str) -> Check:
+    def check(value: object) -> str:
+        if (
+            not isinstance(value, str)
+            or len(value) > longest
+            or not value.isprintable()
+            or not (empty or value.strip())
+            or (pattern is not None and not pattern.fullmatch(value))
+        ):
+            raise refusal(shown(value), accepted)
+        return value
+
+    return Check(check, accepted=accepted)
+
+
+def without_repeats(items: tuple[T, ...], label: Callable[[T], Hashable] = repr) -> tuple[T, ...]:
+    """Return the items; refuse an empty list and an item that stands there twice."""
+    if not items:
+        raise refusal("an empty list", "at least one entry")
+    labels = [label(item) for item in items]
+    for index, each in enumerate(labels):
+        if each in labels[:index]:
+            raise refusal(f"{each} twice", "each entry once", f"[{index}]")
+    return items
+
+
+_NAME_WORDS = f"a name of letters, digits and, inside, ' _.+-', at most {_LONGEST_NAME} characters"
+_LINE_WORDS = f"one line of text, at most {_LONGEST_LINE} characters"
+
+Fraction = Annotated[float, quantity("1", "a fraction such as '5 %' or 0.05", at_least=0, below=1)]
+Current = Annotated[float, quantity("A", above=0)]
+Voltage = Annotated[float, quantity("V", above=0)]
+Resistance = Annotated[float, quantity("ohm", above=0)]
+Temperature = Annotated[float, quantity("K", above=0)]
+Slope = Annotated[float, quantity("1/K")]
+Curvature = Annotated[float, quantity("1/K^2")]
+Title = Annotated[str, _text(None, _LONGEST_LINE, False, _LINE_WORDS)]
+Name = Annotated[str, _text(_NAME, _LONGEST_NAME, False, _NAME_WORDS)]
+Text = Annotated[str, _text(None, _LONGEST_LINE, True, _LINE_WORDS)]

@@ -1,0 +1,81 @@
+"""From files to a process or a study; every failure is one `InputError`."""
+
+from __future__ import annotations
+
+import tomllib
+from pathlib import Path
+from typing import Any
+
+from pydantic import ValidationError
+
+from tcopt.errors import InputError
+from tcopt.files import read_text
+from tcopt.study.choices import FromFile
+from tcopt.study.curve import read_curve
+from tcopt.study.gate import INTERNAL, refused_input
+from tcopt.study.process import Process
+from tcopt.study.question import SLOT_TAGS
+from tcopt.study.study import Study
+from tcopt.units import shown
+
+__all__ = ["load_process", "load_study"]
+
+_LONGEST_PATH = 1000
+
+
+def _read_toml(path: Path) -> dict[str, Any]:
+    try:
+        return tomllib.loads(read_text(path))
+    except RecursionError:
+        problem = "values nested too deeply"
+    except ValueError as error:  # TOMLDecodeError, and numbers of too many digits
+        problem = str(error)
+    raise InputError(f"{path}: found broken TOML: {problem}; accepted: a TOML file")
+
+
+def _beside(path: Path, text: object, key: str, accepted: str) -> Path:
+    if not isinstance(text, str) or not 0 < len(text) <= _LONGEST_PATH or not text.isprintable():
+        raise InputError(f"{path}: {key}: found {shown(text)}; accepted: {accepted}")
+    return path.parent / text
+
+
+def load_process(path: str | Path) -> Process:
+    """Return the process in a TOML file.
+
+    Raises
+    ------
+    InputError : anything in the file, or the file itself, cannot be used
+    """
+    path = Path(path)
+    data = {**_read_toml(path), f"{INTERNAL}path": path}
+    try:
+        return Process.model_validate(data, by_alias=True, by_name=False, context=FromFile())
+    except ValidationError as error:
+        raise refused_input(str(path), error) from None
+
+
+def load_study(path: str | Path) -> Study:
+    """Return the study in a TOML file, with the process that it names.
+
+    Raises
+    ------
+    InputError : anything in either file, or a file itself, cannot be used
+    """
+    path = Path(path)
+    data = {**_read_toml(path), f"{INTERNAL}path": path}
+    process: Process | None = None
+    if "process" in data:
+        wanted = "the path of the process's file, from this file's folder"
+        process = load_process(_beside(path, data["process"], "process", wanted))
+        data["process"] = process
+    target = data.get("target")
+    if isinstance(target, dict):
+        data["target"] = target = {**target, f"{INTERNAL}curve": None}
+        if "file" in target:
+            wanted = "the path of a CSV file, from this file's folder"
+            file = _beside(path, target["file"], "target.file", wanted)
+            target |= {"file": file.resolve(), f"{INTERNAL}curve": read_curve(file)}
+    try:
+        return Study.model_validate(data, by_alias=True, by_name=False, context=FromFile(process))
+    except ValidationError as error:
+        raise refused_input(str(path), error, SLOT_TAGS) from None

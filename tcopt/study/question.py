@@ -1,0 +1,235 @@
+"""The parts of one question: range, resistors, target, search."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from pathlib import Path
+from typing import Annotated, Any, Literal
+
+from pydantic import Discriminator, Field, Tag, ValidationInfo, field_validator, model_validator
+
+from tcopt.study.choices import MaterialName
+from tcopt.study.fields import (
+    Current,
+    Resistance,
+    Slope,
+    Temperature,
+    refusal,
+    whole,
+    without_repeats,
+    words,
+)
+from tcopt.study.gate import INTERNAL, Model
+from tcopt.study.process import Material
+from tcopt.units import format_quantity, parse, shown
+
+__all__ = [
+    "GRADES", "SLOT_TAGS", "FixedSlot", "Limit", "OpenSlot", "Part", "ResistorSlot", "Search",
+    "Target", "TemperatureRange",
+]  # fmt: skip
+
+_AUTOMOTIVE = {0: 150.0, 1: 125.0, 2: 105.0, 3: 85.0}
+GRADES: dict[str, tuple[float, float]] = {
+    f"automotive {grade}": (parse("-40 degC", "K"), parse(f"{high} degC", "K"))
+    for grade, high in _AUTOMOTIVE.items()
+} | {
+    "commercial": (parse("0 degC", "K"), parse("70 degC", "K")),
+    "industrial": (parse("-40 degC", "K"), parse("85 degC", "K")),
+    "military": (parse("-55 degC", "K"), parse("125 degC", "K")),
+}
+"""Ambient ranges [K]: the grades of AEC-Q100, and those of common practice."""
+
+_HOTTEST = 1000.0
+_MOST_PARTS = 16
+_MOST_PIECES = 4
+
+
+class TemperatureRange(Model):
+    """The range over which the current is owed, and the temperature at which it is stated [K]."""
+
+    grade: Annotated[str, words(*GRADES)] | None = None
+    low: Temperature = Field(default=None, validation_alias="from", validate_default=True)
+    high: Temperature = Field(default=None, validation_alias="to", validate_default=True)
+    reference: Temperature = Field(default=parse("27 degC", "K"), validate_default=True)
+
+    @field_validator("low", "high", mode="before")
+    @classmethod
+    def _given_or_graded(cls, value: Any, info: ValidationInfo) -> Any:
+        either = f"either from and to, or grade = {', '.join(repr(grade) for grade in GRADES)}"
+        if "grade" not in info.data:
+            return 300.0  # The grade was refused already; that is the message to give.
+        grade = info.data["grade"]
+        if value is None and grade is None:
+            raise refusal("nothing", either)
+        if grade is None:
+            return value
+        limit = GRADES[grade][0 if info.field_name == "low" else 1]
+        if value is not None and value != limit:
+            raise refusal(f"{shown(value)} beside grade {grade!r}", either)
+        return limit
+
+    @model_validator(mode="after")
+    def _rising(self) -> TemperatureRange:
+        if not self.low < self.high:
+            raise refusal(
+                f"{format_quantity(self.high, 'K')}, not above {format_quantity(self.low, 'K')}",
+                "a range that rises",
+                "to",
+            )
+        if self.high > _HOTTEST:
+            raise refusal(
+                format_quantity(self.high, "K"), f"at most {format_quantity(_HOTTEST, 'K')}", "to"
+            )
+        if not self.low <= self.reference <= self.high:
+            inside = f"{format_quantity(self.low, 'K')} to {format_quantity(self.high, 'K')}"
+            raise refusal(
+                format_quantity(self.reference, "K"), f"inside the range, {inside}", "reference"
+            )
+        return self
+
+
+class Limit(Model):
+    """What the drift must not exceed: 'box' [1/K], or 'deviation' from the target [1]."""
+
+    kind: Literal["box", "deviation"]
+    value: float = Field(gt=0, allow_inf_nan=False)
+
+
+def _limit(value: Any) -> Any:
+    accepted = (
+        "a box drift such as '100 ppm/K', or a deviation such as '0.5 %', above 0 and below 1"
+    )
+    if value is None or isinstance(value, Limit):
+        return value
+    kind: Literal["box", "deviation"] = "deviation"
+    try:
+        number = parse(value, "1")
+    except ValueError:
+        kind = "box"
+        try:
+            number = parse(value, "1/K")
+        except ValueError:
+            raise refusal(shown(value), accepted) from None
+    if not 0 < number < 1:
+        raise refusal(shown(value), accepted)
+    return Limit(kind=kind, value=number)
+
+
+Curve = tuple[tuple[float, ...], tuple[float, ...]]
+"""Temperatures [K], strictly rising, and the current [A] at each."""
+
+
+class Target(Model):
+    """What the output current should do.
+
+    Attributes
+    ----------
+    shape : 'flat'; 'ptat': ``I_0 T/T_0``; 'slope': ``I_0 (1 + slope (T - T_0))``;
+        'over material': ``I_0 / m(T)``; 'curve': a table
+    current : I_0, at the study's reference T_0 [A]; None with a curve, which has its own
+    limit : what the drift must not exceed
+    slope : [1/K], with shape 'slope' alone
+    material : with shape 'over material' alone
+    curve, file : temperatures [K] and currents [A], and where they were read, with 'curve' alone
+    """
+
+    shape: Annotated[
+        Literal["flat", "ptat", "slope", "over material", "curve"],
+        words("flat", "ptat", "slope", "over material", "curve"),
+    ]
+    current: Current | None = None
+    limit: Limit | None = None
+    slope: Slope | None = None
+    material: MaterialName | None = None
+    curve: Curve | None = Field(default=None, validation_alias=f"{INTERNAL}curve")
+    file: Path | None = None
+
+    @field_validator("limit", mode="before")
+    @classmethod
+    def _limit_of_either_kind(cls, value: Any) -> Any:
+        return _limit(value)
+
+    @model_validator(mode="after")
+    def _what_the_shape_takes(self) -> Target:
+        belongs = {"slope": "slope", "material": "over material", "curve": "curve"}
+        for field, shape in belongs.items():
+            key = "file" if field == "curve" else field
+            given = getattr(self, field) is not None
+            if given and self.shape != shape:
+                raise refusal(
+                    f"a {key} with shape {self.shape!r}", f"{key} with shape {shape!r} alone", key
+                )
+            if not given and self.shape == shape:
+                raise refusal("nothing", f"the {key} that shape {shape!r} needs", key)
+        if self.shape == "curve" and self.current is not None:
+            raise refusal("a current beside a curve", "the curve alone, which states it", "current")
+        if self.shape != "curve" and self.current is None:
+            raise refusal("nothing", "a current such as '10 uA'", "current")
+        return self
+
+
+class Part(Model):
+    """A resistor: its material, and its resistance at that material's reference [ohm]."""
+
+    material: MaterialName
+    value: Resistance
+
+
+Join = Annotated[Literal["series", "parallel"], words("series", "parallel")]
+
+
+class FixedSlot(Model):
+    """A resistor that is settled: its parts, all in series or all in parallel."""
+
+    parts: tuple[Part, ...]
+    join: Join = "series"
+
+    @field_validator("parts")
+    @classmethod
+    def _some(cls, value: tuple[Part, ...]) -> tuple[Part, ...]:
+        if not 0 < len(value) <= _MOST_PARTS:
+            found = f"{len(value)} parts" if value else "an empty list"
+            raise refusal(found, f"one to {_MOST_PARTS} parts")
+        return value
+
+
+class OpenSlot(Model):
+    """A resistor to design: materials to choose among and the most pieces to use.
+
+    No materials means, inside a study, all of its process. Four pieces at the
+    most: three already reach every series mix of second-order materials.
+    """
+
+    materials: tuple[MaterialName, ...] = ()
+    pieces: Annotated[int, whole(1, _MOST_PIECES)] = 1
+    join: Annotated[
+        Literal["series", "parallel", "either"], words("series", "parallel", "either")
+    ] = "series"
+
+    @field_validator("materials")
+    @classmethod
+    def _each_once(cls, value: tuple[Material, ...]) -> tuple[Material, ...]:
+        return without_repeats(value, lambda material: material.name)
+
+
+def _which_slot(value: Any) -> str:
+    fixed = isinstance(value, FixedSlot) or (isinstance(value, Mapping) and "parts" in value)
+    return "<parts>" if fixed else "<open>"
+
+
+SLOT_TAGS = frozenset({"<parts>", "<open>"})
+ResistorSlot = Annotated[
+    Annotated[FixedSlot, Tag("<parts>")] | Annotated[OpenSlot, Tag("<open>")],
+    Discriminator(_which_slot),
+]
+
+
+class Search(Model):
+    """How far to search and how much to show.
+
+    ``digits``: significant digits to which resistor values are rounded.
+    ``show``: designs in the table, best first.
+    """
+
+    digits: Annotated[int, whole(2, 8)] = 5
+    show: Annotated[int, whole(1, 1000)] = 10

@@ -1,0 +1,137 @@
+"""A study as the TOML text that reads back as an equal study."""
+
+from __future__ import annotations
+
+import os
+from pathlib import Path
+from typing import Any
+
+from tcopt.errors import InputError
+from tcopt.study.choices import Choice, Span
+from tcopt.study.question import FixedSlot, Limit, OpenSlot
+from tcopt.study.study import Study
+from tcopt.units import exact
+
+__all__ = ["study_text"]
+
+
+def _from(folder: Path, path: Path) -> str:
+    path = path.resolve()
+    try:
+        return Path(os.path.relpath(path, folder.resolve())).as_posix()
+    except ValueError:  # another drive
+        return path.as_posix()
+
+
+def _number(value: float) -> int | float:
+    return int(value) if value.is_integer() and abs(value) < 1e15 else value
+
+
+def _choice(choice: Choice, unit: str) -> Any:
+    def written(value: float) -> Any:
+        return _number(value) if unit == "1" else exact(value, unit)
+
+    if isinstance(choice, Span):
+        import tomlkit  # noqa: PLC0415
+
+        ends = tomlkit.inline_table()
+        ends.update({"from": written(choice.low), "to": written(choice.high)})
+        return ends
+    return written(choice[0]) if len(choice) == 1 else [written(value) for value in choice]
+
+
+def _range(study: Study) -> dict[str, Any]:
+    over = study.range
+    ends = (
+        {"grade": over.grade}
+        if over.grade
+        else {"from": exact(over.low, "K"), "to": exact(over.high, "K")}
+    )
+    return {**ends, "reference": exact(over.reference, "K")}
+
+
+def _circuit(study: Study) -> dict[str, Any]:
+    given = study.circuit
+    table: dict[str, Any] = {"topology": given.topology}
+    if given.transistor is not None:
+        table["transistor"] = given.transistor.name
+    for key, unit in (("input_current", "A"), ("current_ratio", "1")):
+        choice: Choice | None = getattr(given, key)
+        if choice is not None:
+            table[key] = _choice(choice, unit)
+    for key, unit in (
+        ("supply", "V"), ("reference_voltage", "V"), ("input_tc1", "1/K"), ("input_tc2", "1/K^2"),
+        ("reference_tc1", "1/K"), ("reference_tc2", "1/K^2"),
+    ):  # fmt: skip
+        value: float | None = getattr(given, key)
+        if value:
+            table[key] = exact(value, unit)
+    for key in given.circuit.choices:
+        table[key] = _choice(getattr(given, key), "1")
+    return table
+
+
+def _limit(limit: Limit) -> str:
+    return exact(limit.value, "1/K" if limit.kind == "box" else "1")
+
+
+def _target(study: Study, folder: Path) -> dict[str, Any]:
+    target = study.target
+    table: dict[str, Any] = {"shape": target.shape}
+    if target.curve is not None:
+        if target.file is None:
+            raise InputError("target.file: found nothing; accepted: a curve read from a file")
+        table["file"] = _from(folder, target.file)
+    if target.current is not None:
+        table["current"] = exact(target.current, "A")
+    if target.slope is not None:
+        table["slope"] = exact(target.slope, "1/K")
+    if target.material is not None:
+        table["material"] = target.material.name
+    if target.limit is not None:
+        table["limit"] = _limit(target.limit)
+    return table
+
+
+def _slot(slot: FixedSlot | OpenSlot) -> dict[str, Any]:
+    if isinstance(slot, FixedSlot):
+        import tomlkit  # noqa: PLC0415
+
+        parts = tomlkit.array()
+        for part in slot.parts:
+            entry = tomlkit.inline_table()
+            entry.update({"material": part.material.name, "value": exact(part.value, "ohm")})
+            parts.append(entry)
+        return {"parts": parts.multiline(len(slot.parts) > 1), "join": slot.join}
+    names = [material.name for material in slot.materials]
+    return {"materials": names, "pieces": slot.pieces, "join": slot.join}
+
+
+def study_text(study: Study, folder: str | Path) -> str:
+    """Return the TOML text of a study; read from a file in ``folder`` it gives an equal study.
+
+    Parameters
+    ----------
+    study : a study whose process (and curve, if any) came from a file
+    folder : where the text will stand; the process's path is written relative to it
+
+    Raises
+    ------
+    InputError : the process or the curve came from no file, so that no path can name it
+    """
+    import tomlkit  # noqa: PLC0415
+
+    if study.process.path is None:
+        raise InputError("process: found no file; accepted: a process read from a file")
+    folder = Path(folder)
+    return tomlkit.dumps(
+        {
+            "title": study.title,
+            "process": _from(folder, study.process.path),
+            "range": _range(study),
+            "circuit": _circuit(study),
+            "target": _target(study, folder),
+            "resistors": {name: _slot(slot) for name, slot in study.resistors.items()},
+            "search": {"digits": study.search.digits, "show": study.search.show},
+        }
+    )
