@@ -60,7 +60,7 @@ def currents(circuit: Numerics, quantities: Quantities) -> dict[str, Array]:
 
     The closed form in Wright's omega works on the logarithm of the current, so
     that no size of drop over- or underflows. Where no current solves the loops
-    the result is nan, or not positive.
+    the result is nan, or not positive; where it is beyond what a float holds, inf.
 
     Parameters
     ----------
@@ -68,26 +68,30 @@ def currents(circuit: Numerics, quantities: Quantities) -> dict[str, Array]:
     quantities : those of ``circuit.quantities``
     """
     # a short (R = 0) makes log(0) = -inf, for which omega(-inf) = 0 is the right answer
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         found = circuit.closed_form(**_arguments(circuit.quantities, quantities))
     return dict(zip(circuit.unknowns, map(np.asarray, found), strict=True))
 
 
 def sensitivities(
-    circuit: Numerics, quantities: Quantities, solution: Mapping[str, ArrayLike]
+    circuit: Numerics,
+    quantities: Quantities,
+    solution: Mapping[str, ArrayLike],
+    of: str = "I_out",
 ) -> dict[str, Array]:
-    """Return ``d ln I_out / d ln q`` for each quantity q (for ``log_I_S``: per unit of it).
+    """Return ``d ln I / d ln q`` for each quantity q (for ``log_I_S``: per unit of it).
 
     By the implicit function theorem on the loops F(x, q) = 0 in x = ln I:
-    ``dx/d ln q = -(dF/dx)^-1 dF/d ln q``.
+    ``dx/d ln q = -(dF/dx)^-1 dF/d ln q``. nan where there is no solution.
 
     Parameters
     ----------
     circuit, quantities : as for `currents`
     solution : what `currents` returned
+    of : the current whose sensitivities are wanted
     """
-    with np.errstate(divide="ignore", invalid="ignore"):
-        logs = [np.log(np.asarray(solution[name], dtype=float)) for name in circuit.unknowns]
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
+        logs = [_log(solution[name]) for name in circuit.unknowns]
         _, by_current, by_quantity = circuit.partials(
             *logs, **_arguments(circuit.quantities, quantities)
         )
@@ -95,8 +99,14 @@ def sensitivities(
     shape = np.broadcast_shapes(shape, *(np.shape(item) for row in by_quantity for item in row))
     jacobian = _matrix(by_current, shape)
     right = _matrix(by_quantity, shape)
-    answer = -np.linalg.solve(jacobian, right)[..., -1, :]
+    answer = -np.linalg.solve(jacobian, right)[..., circuit.unknowns.index(of), :]
     return {name: answer[..., k] for k, name in enumerate(circuit.quantities)}
+
+
+def _log(current: ArrayLike) -> Array:
+    """Return the logarithm of a current, nan where it is no solution: -inf is a singular matrix."""
+    amperes = np.asarray(current, dtype=float)
+    return np.asarray(np.log(np.where(amperes > 0, amperes, np.nan)))
 
 
 def _matrix(rows: Any, shape: tuple[int, ...]) -> Array:
@@ -113,7 +123,7 @@ def needed_resistance(
     nan, or not positive, where no resistance brings it there.
     """
     names = tuple(q for q in circuit.quantities if q != resistance_name(slot))
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         return np.asarray(
             circuit.needs[slot](np.asarray(output, dtype=float), **_arguments(names, quantities)),
             dtype=float,
