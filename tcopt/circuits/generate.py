@@ -38,7 +38,7 @@ def _text(expression: sp.Expr) -> str:
 
 
 def _in_logs(expression: sp.Expr, currents: Iterable[sp.Symbol]) -> sp.Expr:
-    """Write currents and I_S as exponentials of their logarithms, which neither over- nor underflow."""
+    """Write currents and I_S as exponentials of their logarithms, which do not underflow."""
     I_S = Terms().symbol("I_S")
     swaps = {I: sp.exp(_log_of(I)) for I in currents} | {I_S: sp.exp(_LOG_I_S)}
     return sp.expand_log(sp.expand_log(expression, force=True).subs(swaps), force=True)
@@ -145,7 +145,7 @@ def circuit_module(circuit: Circuit, feed: str) -> str:
 def _residual_functions(
     residuals: Sequence[sp.Expr], currents: Sequence[sp.Symbol], quantities: Sequence[str]
 ) -> str:
-    """Return ``partials``: loops, d/d(log current) and d/d(log quantity), with shared terms once."""
+    """Return ``partials``: loops, d/d(log current), d/d(log quantity), with shared terms once."""
     in_logs = [_in_logs(r, currents) for r in residuals]
     logs = [_log_of(I) for I in currents]
     flat: list[sp.Expr] = list(in_logs)
@@ -164,9 +164,8 @@ def _residual_functions(
     rows = [_tuple(texts[n + k * n : n + (k + 1) * n]) for k in range(n)]
     start = n + n * n
     columns = [_tuple(texts[start + k * m : start + (k + 1) * m]) for k in range(n)]
-    body.append(
-        f"return (\n        {_tuple(texts[:n])},\n        {_tuple(rows)},\n        {_tuple(columns)},\n    )"
-    )
+    inner = "".join(f"        {_tuple(part)},\n" for part in (texts[:n], rows, columns))
+    body.append(f"return (\n{inner}    )")
     return _function(
         "partials",
         "Return the loops, their partials by log current, and by log quantity.",
@@ -179,10 +178,13 @@ def laws_module() -> str:
     """Return the source of the laws: values and slopes against temperature."""
     T, T_0, TC1, TC2, eta, V_G0, k_q = sp.symbols("T T_0 TC1 TC2 eta V_G0 k_q", positive=True)
     ratio = resistor.ratio(T, T_0, TC1, TC2)
+    moved_tc1, moved_tc2 = resistor.about(T, T_0, TC1, TC2)
     growth = bipolar.log_saturation_growth(T, T_0, eta, V_G0, k_q)
     both = (
         ("resistance_ratio", ratio, "T T_0 TC1 TC2", "Return R(T)/R(T_0)"),
         ("resistance_ratio_slope", sp.diff(ratio, T), "T T_0 TC1 TC2", "Return d(R/R_0)/dT [1/K]"),
+        ("moved_tc1", moved_tc1, "T T_0 TC1 TC2", "Return TC1 with T as the reference [1/K]"),
+        ("moved_tc2", moved_tc2, "T T_0 TC1 TC2", "Return TC2 with T as the reference [1/K^2]"),
         ("thermal_voltage", bipolar.thermal_voltage(T, k_q), "T k_q", "Return V_T [V]"),
         ("log_saturation_growth", growth, "T T_0 eta V_G0 k_q", "Return ln(I_S(T)/I_S(T_0))"),
         (

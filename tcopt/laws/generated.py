@@ -18,6 +18,16 @@ def resistance_ratio_slope(T: Any, T_0: Any, TC1: Any, TC2: Any) -> Any:
     return TC1 + TC2*(2*T - 2*T_0)
 
 
+def moved_tc1(T: Any, T_0: Any, TC1: Any, TC2: Any) -> Any:
+    """Return TC1 with T as the reference [1/K]."""
+    return (TC1 + TC2*(2*T - 2*T_0))/(TC1*(T - T_0) + TC2*(T - T_0)**2 + 1)
+
+
+def moved_tc2(T: Any, T_0: Any, TC1: Any, TC2: Any) -> Any:
+    """Return TC2 with T as the reference [1/K^2]."""
+    return TC2/(TC1*(T - T_0) + TC2*(T - T_0)**2 + 1)
+
+
 def thermal_voltage(T: Any, k_q: Any) -> Any:
     """Return V_T [V]."""
     return T*k_q
