@@ -100,7 +100,9 @@ def sensitivities(
     jacobian = _matrix(by_current, shape)
     right = _matrix(by_quantity, shape)
     answer = -np.linalg.solve(jacobian, right)[..., circuit.unknowns.index(of), :]
-    return {name: np.asarray(answer[..., k], dtype=float) for k, name in enumerate(circuit.quantities)}
+    return {
+        name: np.asarray(answer[..., k], dtype=float) for k, name in enumerate(circuit.quantities)
+    }
 
 
 def _log(current: ArrayLike) -> Array:
