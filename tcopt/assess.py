@@ -16,7 +16,7 @@ from tcopt.operation import Operation, celsius
 from tcopt.targets import TargetCurrent, target_current
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Study
+    from tcopt.study import Study
 
 __all__ = ["Assessment", "Verdict", "assess", "require_supply"]
 
@@ -104,7 +104,7 @@ def assess(operation: Operation) -> Assessment:
     points = extreme_points(residual, low, high, target.knots)
     deviation = float(np.abs(residual(points) - 1).max())
     at_reference = np.array([reference])
-    slope = float(sum(operation.causes(at_reference).values())[0])
+    slope = float(np.sum(list(operation.causes(at_reference).values())))
     spent = float(target.log_slope(at_reference)[0])
     drift = drift_of(operation.output, slope, deviation, low, high, reference, target.knots)
     left = drift_of(residual, slope - spent, deviation, low, high, reference, target.knots)

@@ -12,11 +12,11 @@ from tcopt.arrays import Array
 from tcopt.assess import Assessment, assess
 from tcopt.circuits import GIVEN, SUPPLY
 from tcopt.errors import InputError
-from tcopt.operation import Choices, Mix, Operation
+from tcopt.operation import Choices, Operation, fixed_mixes
 from tcopt.traps import warnings_for
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Study
+    from tcopt.study import Study
 
 __all__ = ["Budget", "CheckResult", "check", "finished_operation"]
 
@@ -98,7 +98,7 @@ def finished_operation(study: Study) -> Operation:
             made.mirror_ratio[0],
             inputs[0] if isinstance(inputs, tuple) else None,
         ),
-        {slot: Mix(fixed.parts, fixed.join) for slot, fixed in study.fixed_slots.items()},
+        fixed_mixes(study),
     )
 
 

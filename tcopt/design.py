@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING
 from tcopt.assess import Assessment
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Study
+    from tcopt.study import Study
 
 __all__ = ["Bound", "DesignResult", "NeededPoint", "PlainMirror"]
 

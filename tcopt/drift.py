@@ -15,8 +15,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.polynomial import Chebyshev
 
-from tcopt.errors import NoSolutionError
 from tcopt.arrays import Array
+from tcopt.errors import NoSolutionError
 
 __all__ = ["Drift", "Extreme", "drift_of", "extreme_points"]
 

@@ -28,9 +28,9 @@ from tcopt.solve import Numerics, currents, needed_resistance, numerics, sensiti
 from tcopt.symbols import resistance_name
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Material, Part, Study
+    from tcopt.study import Part, Study
 
-__all__ = ["Choices", "Mix", "Operation", "celsius"]
+__all__ = ["Choices", "Mix", "Operation", "celsius", "fixed_mixes"]
 
 
 def celsius(temperature: float) -> str:
@@ -159,10 +159,10 @@ class Operation:
         """Return the resistance [ohm] that an open slot needs for this output [A]."""
         return needed_resistance(self.circuit, slot, output, self.quantities(temperature))
 
-    def sensitivities(self, temperature: ArrayLike) -> dict[str, Array]:
-        """Return ``d ln I_out/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`)."""
+    def sensitivities(self, temperature: ArrayLike, of: str = "I_out") -> dict[str, Array]:
+        """Return ``d ln I/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`)."""
         T = np.asarray(temperature, dtype=float)
-        return sensitivities(self.circuit, self.quantities(T), self.currents(T))
+        return sensitivities(self.circuit, self.quantities(T), self.currents(T), of)
 
     def causes(self, temperature: ArrayLike) -> dict[str, Array]:
         """Return the output's local temperature coefficient [1/K], split into its causes.
@@ -190,3 +190,14 @@ class Operation:
             for (symbol, cause), slope in slopes.items()
             if symbol in by_quantity
         }
+
+
+def fixed_mixes(study: Study) -> dict[str, Mix]:
+    """Return the mix of every slot that the study leaves no choice in."""
+    from tcopt.study import FixedSlot  # noqa: PLC0415  this layer lies below the gate
+
+    return {
+        name: Mix(slot.parts, slot.join)
+        for name, slot in study.resistors.items()
+        if isinstance(slot, FixedSlot)
+    }

@@ -8,11 +8,11 @@ from typing import TYPE_CHECKING, TypeVar
 
 import numpy as np
 
-from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope
 from tcopt.arrays import Array
+from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Target
+    from tcopt.study import Target
 
 __all__ = ["TargetCurrent", "target_current"]
 
@@ -53,24 +53,24 @@ def target_current(target: Target, reference: float) -> TargetCurrent:
 
 
 def _flat(target: Target, reference: float) -> TargetCurrent:  # noqa: ARG001
-    I_0 = target.current
+    I_0 = _present(target.current)
     return TargetCurrent(lambda T: np.full_like(T, I_0), np.zeros_like)
 
 
 def _ptat(target: Target, reference: float) -> TargetCurrent:
-    I_0 = target.current
+    I_0 = _present(target.current)
     return TargetCurrent(lambda T: I_0 * T / reference, lambda T: 1 / T)
 
 
 def _slope(target: Target, reference: float) -> TargetCurrent:
-    I_0, a = target.current, _present(target.slope)
+    I_0, a = _present(target.current), _present(target.slope)
     return TargetCurrent(
         lambda T: I_0 * (1 + a * (T - reference)), lambda T: a / (1 + a * (T - reference))
     )
 
 
 def _over_material(target: Target, reference: float) -> TargetCurrent:
-    I_0, material = target.current, _present(target.material)
+    I_0, material = _present(target.current), _present(target.material)
     return TargetCurrent(
         lambda T: I_0 * resistance_ratio(material, reference) / resistance_ratio(material, T),
         lambda T: -resistance_ratio_slope(material, T) / resistance_ratio(material, T),

@@ -14,14 +14,14 @@ from tcopt.laws.numbers import log_saturation_current, thermal_voltage
 from tcopt.operation import celsius
 
 if TYPE_CHECKING:
-    from tcopt.study.model import Part
+    from tcopt.study import Part
 
 __all__ = ["warnings_for"]
 
 _FEW_SQUARES = 5.0
-"""Below about this many squares the end resistance is a good part of the whole (common practice)."""
+"""Squares below which the end resistance is a good part of the whole (common practice)."""
 _SMALL_HEADROOM = 0.2
-"""Volts across the feed resistor below which V_BE's own drift rules the input (common practice)."""
+"""Volts across the resistors below which V_BE's drift rules the input (common practice)."""
 _PEAK = 0.2
 """Sensitivity of a peaking source's output to its input above which it sits on the flank."""
 

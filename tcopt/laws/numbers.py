@@ -9,8 +9,8 @@ from numpy.typing import ArrayLike
 from scipy.constants import e as ELEMENTARY_CHARGE
 from scipy.constants import k as BOLTZMANN
 
-from tcopt.laws import generated
 from tcopt.arrays import Array
+from tcopt.laws import generated
 
 __all__ = [
     "VOLT_PER_KELVIN",

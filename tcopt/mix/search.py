@@ -1,0 +1,196 @@
+"""`design`: the choices outside, the mixes inside, rounding, and the full solution of what is left."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Sequence
+from dataclasses import replace
+from itertools import product
+
+import numpy as np
+from numpy.polynomial import Chebyshev
+
+from tcopt.arrays import Array
+from tcopt.assess import Assessment, assess, require_supply
+from tcopt.circuits import CIRCUITS
+from tcopt.design import Bound, DesignResult, NeededPoint, PlainMirror
+from tcopt.errors import InputError, NoSolutionError
+from tcopt.laws.numbers import log_saturation_current, thermal_voltage
+from tcopt.mix.band import Band
+from tcopt.mix.joint import search_two_slots
+from tcopt.mix.program import Fit
+from tcopt.mix.single import Best, Group, search_one_slot
+from tcopt.operation import Choices, Mix, Operation, fixed_mixes
+from tcopt.study import OpenSlot, Span, Study
+from tcopt.targets import target_current
+
+__all__ = ["design"]
+
+_SPARE = 5
+"""Designs assessed beyond those shown, since rounding may change their order."""
+_MOST_CHOICES = 10_000
+
+
+def design(study: Study, progress: Callable[[int, int], None] | None = None) -> DesignResult:
+    """Return the best designs for a study, ranked, with the bound beside them.
+
+    Parameters
+    ----------
+    study : the question; with no slot open, its choices alone are compared
+    progress : called with combinations done and combinations in all
+
+    Raises
+    ------
+    InputError
+        If more slots are open than can be designed together.
+    NoSolutionError
+        If no allowed design gives a current over the whole range.
+    """
+    open_slots = {
+        name: slot for name, slot in study.resistors.items() if isinstance(slot, OpenSlot)
+    }
+    groups = list(_groups(study))
+    for group in groups:
+        require_supply(study, group[0].choices.area_ratio)
+    target = target_current(study.target, study.range.reference)
+    keep = study.search.show
+    if len(open_slots) == 1:
+        ((name, slot),) = open_slots.items()
+        bands = [Group(Band(operation, name, target), span) for operation, span in groups]
+        best, deviation = search_one_slot(bands, slot, keep, progress)
+        bound = Bound(deviation, proven=all(span is None for _, span in groups))
+    elif len(open_slots) == 2:
+        best, deviation = search_two_slots(groups, open_slots, target, keep, progress)
+        bound = Bound(deviation, proven=False)
+    elif not open_slots:
+        best, bound = _fixed_slots_only(groups, keep)
+    else:
+        raise InputError(
+            f"{study.path}: resistors: found {len(open_slots)} open slots "
+            f"({', '.join(open_slots)}); accepted: at most two, the others with parts"
+        )
+    designs = _finished(study, best, tuple(open_slots), keep)
+    if not designs:
+        raise NoSolutionError(
+            f"{study.path}: no allowed mix gives the target current over the whole range; "
+            "accepted: ratios, inputs and materials for which the needed resistance is positive"
+        )
+    return DesignResult(
+        study=study,
+        designs=designs,
+        plain_mirrors=tuple(_plain_mirror(found) for found in designs),
+        bound=bound,
+        needed={name: _needed_point(designs[0], name) for name in open_slots},
+        examined=best.examined,
+        skipped=best.skipped,
+    )
+
+
+def _groups(study: Study) -> Iterator[tuple[Operation, tuple[float, float] | None]]:
+    """Yield every choice of ratios and input; a free input starts at the middle of its span."""
+    inputs = study.input_currents
+    spans: Sequence[tuple[float | None, tuple[float, float] | None]]
+    if inputs is None:
+        spans = [(None, None)]
+    elif isinstance(inputs, Span):
+        spans = [(float(np.sqrt(inputs.low * inputs.high)), (inputs.low, inputs.high))]
+    else:
+        spans = [(value, None) for value in inputs]
+    made = study.circuit
+    if len(made.area_ratio) * len(made.mirror_ratio) * len(spans) > _MOST_CHOICES:
+        raise InputError(
+            f"{study.path}: circuit: found more than {_MOST_CHOICES} combinations of ratios and "
+            "inputs; accepted: fewer choices"
+        )
+    fixed = fixed_mixes(study)
+    for area, mirror, (current, span) in product(made.area_ratio, made.mirror_ratio, spans):
+        yield Operation(study, Choices(area, mirror, current), fixed), span
+
+
+def _fixed_slots_only(
+    groups: Sequence[tuple[Operation, tuple[float, float] | None]], keep: int
+) -> tuple[Best, Bound]:
+    """Compare the choices of a study whose resistors are all settled."""
+    best = Best(keep)
+    for number, (operation, span) in enumerate(groups):
+        if span is not None:
+            raise InputError(
+                f"{operation.study.path}: circuit: found a range of input currents with every "
+                "resistor settled; accepted: a list of input currents, or an open slot"
+            )
+        found = assess(operation)
+        deviation = found.residual_drift.deviation_ppm / 1e6
+        best.add(Fit(operation, deviation, deviation), number)
+    return best, Bound(min(fit.deviation for fit in best.ranked()), proven=True)
+
+
+def _finished(
+    study: Study, best: Best, open_slots: Sequence[str], keep: int
+) -> tuple[Assessment, ...]:
+    """Round the values of the best designs, solve them fully, and rank what they then do."""
+    found: list[Assessment] = []
+    for fit in best.ranked()[: keep + _SPARE]:
+        operation = fit.operation
+        mixes = dict(operation.mixes)
+        for name in open_slots:
+            mixes[name] = _rounded(mixes[name], study.search.digits)
+        choices = operation.choices
+        if choices.input_current is not None:
+            current = _round(choices.input_current, study.search.digits)
+            choices = replace(choices, input_current=current)
+        try:
+            found.append(assess(replace(operation, choices=choices, mixes=mixes)))
+        except NoSolutionError:
+            continue
+    found.sort(key=lambda item: item.residual_drift.deviation_ppm)
+    return tuple(found[:keep])
+
+
+def _round(value: float, digits: int) -> float:
+    return float(f"{value:.{digits}g}")
+
+
+def _rounded(mix: Mix, digits: int) -> Mix:
+    parts = tuple(
+        part.model_copy(update={"value": _round(part.value, digits)}) for part in mix.parts
+    )
+    return Mix(parts, mix.join)
+
+
+def _plain_mirror(found: Assessment) -> PlainMirror | None:
+    """Return what a mirror without emitter resistors would take for the same output."""
+    operation = found.operation
+    study = operation.study
+    made = study.circuit
+    if not CIRCUITS[made.topology].is_mirror or made.transistor is None:
+        return None
+    T = np.array([study.range.reference])
+    current = found.target.current(T) / operation.choices.area_ratio
+    feed = None
+    if made.supply is not None:
+        V_BE = thermal_voltage(T) * (np.log(current) - log_saturation_current(made.transistor, T))
+        feed = float(((made.supply - V_BE) / current)[0])
+    return PlainMirror(float(current[0]), feed)
+
+
+def _needed_point(found: Assessment, slot: str) -> NeededPoint:
+    """Return the perfect resistor's value and coefficients, from the needed resistance.
+
+    Its derivatives are those of its Chebyshev interpolant over a few kelvin
+    about the reference, where it is smooth to rounding.
+    """
+    operation = found.operation
+    others = {name: mix for name, mix in operation.mixes.items() if name != slot}
+    open_again = replace(operation, mixes=others)
+    reference = operation.study.range.reference
+
+    def need(T: Array) -> Array:
+        return open_again.needed(slot, found.target.current(T), T)
+
+    reach = 10.0
+    proxy = Chebyshev.interpolate(need, 10, domain=[reference - reach, reference + reach])
+    value = float(proxy(reference))
+    return NeededPoint(
+        value,
+        float(proxy.deriv(1)(reference)) / value,
+        float(proxy.deriv(2)(reference)) / value / 2,
+    )
