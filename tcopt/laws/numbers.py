@@ -18,6 +18,7 @@ __all__ = [
     "ResistorData",
     "log_saturation_current",
     "log_saturation_slope",
+    "moved_coefficients",
     "resistance_ratio",
     "resistance_ratio_slope",
     "thermal_voltage",
@@ -73,6 +74,16 @@ def resistance_ratio_slope(material: ResistorData, temperature: ArrayLike) -> Ar
     return np.asarray(
         generated.resistance_ratio_slope(T, material.reference, material.tc1, material.tc2)
     )
+
+
+def moved_coefficients(material: ResistorData, reference: float) -> tuple[float, float]:
+    """Return TC1 [1/K] and TC2 [1/K^2] of a material about another reference [K].
+
+    ``TC1' = (TC1 + 2 TC2 d)/m``, ``TC2' = TC2/m``, with d the move and m what the
+    resistance becomes by it.
+    """
+    data = (reference, material.reference, material.tc1, material.tc2)
+    return float(generated.moved_tc1(*data)), float(generated.moved_tc2(*data))
 
 
 def log_saturation_current(transistor: JunctionData, temperature: ArrayLike) -> Array:
