@@ -1,4 +1,4 @@
-"""What `design` answers: the ranked designs, the bound beside them, and the point that was needed."""
+"""What `design` answers: ranked designs, the bound beside them, the point that was needed."""
 
 from __future__ import annotations
 

@@ -11,6 +11,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.polynomial import Chebyshev
@@ -21,7 +22,7 @@ from tcopt.errors import NoSolutionError
 __all__ = ["Drift", "Extreme", "drift_of", "extreme_points"]
 
 _SETTLED = 3e-14
-"""Size of the last Chebyshev coefficients, relative to the largest, at which the rest is rounding."""
+"""Size of the last coefficients, relative to the largest, at which the rest is rounding."""
 _DEGREES = (16, 32, 64, 128, 256)
 
 
@@ -72,7 +73,7 @@ def extreme_points(
     """
     edges = [low, *(k for k in knots if low < k < high), high]
     found = list(edges)
-    for left, right in zip(edges, edges[1:], strict=False):
+    for left, right in pairwise(edges):
         for degree in _DEGREES:
             proxy = Chebyshev.interpolate(function, degree, domain=[left, right])
             size = np.abs(proxy.coef)

@@ -280,6 +280,17 @@ def refine(
     return Fit(point.filled(), deviation, deviation)
 
 
+def _rows_of_band(
+    matrix: Array, off: Array, deviation: float, unit: float
+) -> tuple[list[Array], list[Array]]:
+    """Return ``|I/I_t - 1| <= e`` as rows, with ln(1 +- e) linearised about the deviation now."""
+    top = (off - np.log1p(deviation) + deviation / (1 + deviation)) / unit
+    bottom = (-off + np.log1p(-deviation) + deviation / (1 - deviation)) / unit
+    e_top = np.full((len(off), 1), -1 / (1 + deviation))
+    e_bottom = np.full((len(off), 1), -1 / (1 - deviation))
+    return [np.hstack([matrix, e_top]), np.hstack([-matrix, e_bottom])], [-top, -bottom]
+
+
 @dataclass(frozen=True)
 class _Point:
     """Where the refinement stands."""
@@ -337,13 +348,7 @@ class _Point:
             bounds.append((max(low, -trust), min(high, trust)))
         unit = max(deviation, 1e-9)
         matrix = np.hstack(blocks) / unit
-        # |I/I_t - 1| <= e, with ln(1 +- e) linearised about the deviation now
-        top = (off - np.log1p(deviation) + deviation / (1 + deviation)) / unit
-        bottom = (-off + np.log1p(-deviation) + deviation / (1 - deviation)) / unit
-        e_top = np.full((len(T), 1), -1 / (1 + deviation))
-        e_bottom = np.full((len(T), 1), -1 / (1 - deviation))
-        rows = [np.hstack([matrix, e_top]), np.hstack([-matrix, e_bottom])]
-        sides = [-top, -bottom]
+        rows, sides = _rows_of_band(matrix, off, deviation, unit)
         at = 0
         for size, limit in zip(sizes, limits, strict=True):
             block = np.zeros((len(limit), matrix.shape[1] + 1))

@@ -1,4 +1,4 @@
-"""`design`: the choices outside, the mixes inside, rounding, and the full solution of what is left."""
+"""`design`: the choices outside, the mixes inside, rounding, and the full solution."""
 
 from __future__ import annotations
 
