@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import os
+import secrets
 import stat
-import tempfile
 from contextlib import suppress
 from pathlib import Path
 
@@ -14,6 +14,14 @@ __all__ = ["LARGEST_INPUT", "read_text", "write_atomically"]
 
 LARGEST_INPUT = 4 * 2**20
 """Largest input file [bytes]; a study is a few thousand."""
+
+
+def _said(path: Path) -> str:
+    return str(path) if str(path).isprintable() else repr(str(path))
+
+
+def _reason(error: OSError | ValueError) -> str:
+    return getattr(error, "strerror", None) or str(error)
 
 
 def read_text(path: Path) -> str:
@@ -28,19 +36,22 @@ def read_text(path: Path) -> str:
         # A pipe or a device could block for ever or never end.
         if not stat.S_ISREG(mode):
             what = "a folder" if stat.S_ISDIR(mode) else "no plain file"
-            raise InputError(f"{path}: found {what}; accepted: a text file")
+            raise InputError(f"{_said(path)}: found {what}; accepted: a text file")
         with path.open("rb") as file:
             content = file.read(LARGEST_INPUT + 1)
     except FileNotFoundError:
-        raise InputError(f"{path}: found no such file; accepted: an existing text file") from None
-    except (OSError, ValueError) as error:
-        reason = getattr(error, "strerror", None) or error
         raise InputError(
-            f"{str(path)!r}: found a file that cannot be read ({reason}); accepted: a readable file"
+            f"{_said(path)}: found no such file; accepted: an existing text file"
+        ) from None
+    except (OSError, ValueError) as error:
+        raise InputError(
+            f"{_said(path)}: found a file that cannot be read ({_reason(error)}); "
+            "accepted: a readable file"
         ) from None
     if len(content) > LARGEST_INPUT:
         raise InputError(
-            f"{path}: found more than {LARGEST_INPUT} bytes; accepted: at most {LARGEST_INPUT}"
+            f"{_said(path)}: found a file of more than {LARGEST_INPUT} bytes; "
+            f"accepted: at most {LARGEST_INPUT}"
         )
     try:
         # Spreadsheets put a byte order mark first.
@@ -48,7 +59,7 @@ def read_text(path: Path) -> str:
     except UnicodeDecodeError as error:
         line = content[: error.start].count(b"\n") + 1
         raise InputError(
-            f"{path}: found bytes that are not UTF-8 in line {line}; accepted: UTF-8 text"
+            f"{_said(path)}: found bytes that are not UTF-8 in line {line}; accepted: UTF-8 text"
         ) from None
 
 
@@ -60,27 +71,19 @@ def write_atomically(path: Path, content: str | bytes) -> None:
     InputError : the file cannot be written there
     """
     data = content.encode() if isinstance(content, str) else content
-    temporary: Path | None = None
+    # Not the tempfile module: its files are for the owner alone, whatever the umask says.
+    temporary = path.parent / f".tcopt-{secrets.token_hex(8)}"
     try:
-        handle, name = tempfile.mkstemp(prefix=f".{path.name}.", dir=path.parent)
-        temporary = Path(name)
-        with os.fdopen(handle, "wb") as file:
+        with temporary.open("xb") as file:
             file.write(data)
             file.flush()
             os.fsync(file.fileno())
-        # mkstemp makes files for the owner alone; give what the umask would have given.
-        umask = os.umask(0)
-        os.umask(umask)
-        temporary.chmod(0o666 & ~umask)
         temporary.replace(path)
-        temporary = None
     except (OSError, ValueError) as error:
-        reason = getattr(error, "strerror", None) or error
         raise InputError(
-            f"{str(path)!r}: found a place that cannot be written ({reason}); "
+            f"{_said(path)}: found a place that cannot be written ({_reason(error)}); "
             "accepted: a file name in an existing, writable folder"
         ) from None
     finally:
-        if temporary is not None:
-            with suppress(OSError):
-                temporary.unlink()
+        with suppress(OSError, ValueError):
+            temporary.unlink()

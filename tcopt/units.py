@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import math
 import re
+import reprlib
 from decimal import Context, Decimal, localcontext
 from functools import lru_cache
 from numbers import Real
@@ -137,10 +138,22 @@ def _read(text: str, unit: str) -> float | None:
     return None if number == 0 and exactly != 0 else number
 
 
+class _Short(reprlib.Repr):
+    def __init__(self) -> None:
+        super().__init__()
+        self.maxlevel, self.maxstring, self.maxother = 2, 60, 60
+
+    def repr_int(self, x: int, level: int) -> str:  # noqa: ARG002
+        # Python refuses to write out whole numbers of thousands of digits.
+        return repr(x) if x.bit_length() < 100 else "a whole number of more than 30 digits"
+
+
+_SHORT = _Short()
+
+
 def shown(value: object) -> str:
     """Return what was found, short enough for a message."""
-    text = repr(value)
-    return text if len(text) <= _LONGEST_TEXT else f"{text[: _LONGEST_TEXT - 20]}... (too long)"
+    return _SHORT.repr(value)
 
 
 def accepted_quantity(unit: str) -> str:

@@ -8,7 +8,8 @@ from typing import Annotated, Any
 
 from pydantic import BeforeValidator, PlainValidator, ValidationInfo
 
-from tcopt.study.fields import quantity, refusal
+from tcopt.study.fields import Check, quantity, refusal
+from tcopt.study.gate import quoted
 from tcopt.study.process import Material, Process, Transistor
 from tcopt.units import shown
 
@@ -51,25 +52,16 @@ def scaled(choice: Choice, factor: float) -> Choice:
     return tuple(value * factor for value in choice)
 
 
-def _choice(unit: str, *, spans: bool) -> Callable[[Any], Choice]:
-    check = quantity(unit, above=0)
-
-    def read(value: object, key: str) -> float:
-        try:
-            number = check.func(value)  # type: ignore[call-arg]
-        except ValueError as error:
-            context: Any = getattr(error, "context", None) or {}
-            raise refusal(context["found"], context["accepted"], key) from None
-        return float(number)
+def _choice(check: Check, *, spans: bool) -> Callable[[Any], Choice]:
 
     def span(value: Mapping[Any, Any]) -> Span:
         for key in value:
             if key not in {"from", "to"}:
-                raise refusal("an unknown key", "from, to", str(key))
+                raise refusal("an unknown key", "from, to", quoted(str(key)))
         for key in ("from", "to"):
             if key not in value:
                 raise refusal("nothing", check.accepted, key)
-        low, high = read(value["from"], "from"), read(value["to"], "to")
+        low, high = check.at(value["from"], "from"), check.at(value["to"], "to")
         if not low < high:
             raise refusal(f"{shown(value['to'])}, not above 'from'", "a range that rises", "to")
         return Span(low, high)
@@ -80,11 +72,11 @@ def _choice(unit: str, *, spans: bool) -> Callable[[Any], Choice]:
         if spans and isinstance(value, Mapping):
             return span(value)
         if not isinstance(value, (list, tuple)):
-            return (read(value, ""),)
+            return (check.at(value, ""),)
         if not 0 < len(value) <= _MOST_CHOICES:
             found = f"a list of {len(value)}" if value else "an empty list"
             raise refusal(found, f"one to {_MOST_CHOICES} entries")
-        numbers = tuple(read(each, f"[{index}]") for index, each in enumerate(value))
+        numbers = tuple(check.at(each, f"[{index}]") for index, each in enumerate(value))
         for index, number in enumerate(numbers):
             if number in numbers[:index]:
                 raise refusal(f"{shown(value[index])} twice", "each value once", f"[{index}]")
@@ -93,9 +85,12 @@ def _choice(unit: str, *, spans: bool) -> Callable[[Any], Choice]:
     return validate
 
 
-CurrentChoice = Annotated[Choice, PlainValidator(_choice("A", spans=True))]
-RatioChoice = Annotated[Choice, PlainValidator(_choice("1", spans=True))]
-Ratios = Annotated[tuple[float, ...], PlainValidator(_choice("1", spans=False))]
+_CURRENT = quantity("A", above=0, below=1e3)
+_MULTIPLE = quantity("1", "a pure number such as 10", above=0, below=1e9)
+_RATIO = quantity("1", "a pure number such as 8", above=0, below=1e6)
+CurrentChoice = Annotated[Choice, PlainValidator(_choice(_CURRENT, spans=True))]
+RatioChoice = Annotated[Choice, PlainValidator(_choice(_MULTIPLE, spans=True))]
+Ratios = Annotated[tuple[float, ...], PlainValidator(_choice(_RATIO, spans=False))]
 
 
 def _looked_up(kind: str) -> BeforeValidator:

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+import math
 import re
 from collections.abc import Callable, Hashable
 from dataclasses import dataclass
-from typing import Annotated, TypeVar
+from typing import Annotated, Any, TypeVar
 
 from pydantic import BeforeValidator
 from pydantic_core import PydanticCustomError
@@ -13,7 +14,8 @@ from pydantic_core import PydanticCustomError
 from tcopt.units import accepted_quantity, parse, shown
 
 __all__ = [
-    "Check", "Current", "Curvature", "Fraction", "Name", "Resistance", "Slope", "Temperature",
+    "Check", "Current", "Curvature", "Fraction", "Name", "Resistance", "SaturationCurrent",
+    "Slope", "Temperature",
     "Text", "Title", "Voltage", "quantity", "refusal", "whole", "without_repeats", "words",
 ]  # fmt: skip
 
@@ -34,35 +36,42 @@ class Check(BeforeValidator):
 
     accepted: str = ""
 
+    def at(self, value: object, key: str) -> Any:
+        """Return the checked value; a refusal names the key."""
+        try:
+            return self.func(value)  # type: ignore[call-arg]
+        except PydanticCustomError as error:
+            context = error.context or {}
+            raise refusal(context["found"], context["accepted"], key) from None
+
 
 def quantity(
     unit: str,
     accepted: str | None = None,
     *,
-    above: float | None = None,
-    at_least: float | None = None,
-    below: float | None = None,
+    above: float = -math.inf,
+    at_least: float = -math.inf,
+    below: float = math.inf,
 ) -> Check:
-    """Return the check of a quantity: text with its unit, or a bare number in SI."""
+    """Return the check of a quantity: text with its unit, or a bare number in SI.
+
+    The bounds are wide: they keep out slips of prefix, and figures for which
+    the laws overflow.
+    """
     words_for_it = accepted or accepted_quantity(unit)
     limits = [
         f"{word} {limit:g}{'' if unit == '1' else ' ' + unit}"
         for word, limit in (("above", above), ("at least", at_least), ("below", below))
-        if limit is not None
+        if math.isfinite(limit)
     ]
-    if limits:
-        words_for_it = f"{words_for_it}; {' and '.join(limits)}"
+    words_for_it = ", ".join([words_for_it, *([" and ".join(limits)] if limits else [])])
 
     def check(value: object) -> float:
         try:
             number = parse(value, unit, words_for_it)
         except ValueError:
             raise refusal(shown(value), words_for_it) from None
-        if (
-            (above is not None and number <= above)
-            or (at_least is not None and number < at_least)
-            or (below is not None and number >= below)
-        ):
+        if not (above < number < below and number >= at_least):
             raise refusal(shown(value), words_for_it)
         return number
 
@@ -123,12 +132,13 @@ _NAME_WORDS = f"a name of letters, digits and, inside, ' _.+-', at most {_LONGES
 _LINE_WORDS = f"one line of text, at most {_LONGEST_LINE} characters"
 
 Fraction = Annotated[float, quantity("1", "a fraction such as '5 %' or 0.05", at_least=0, below=1)]
-Current = Annotated[float, quantity("A", above=0)]
-Voltage = Annotated[float, quantity("V", above=0)]
-Resistance = Annotated[float, quantity("ohm", above=0)]
-Temperature = Annotated[float, quantity("K", above=0)]
-Slope = Annotated[float, quantity("1/K")]
-Curvature = Annotated[float, quantity("1/K^2")]
+Current = Annotated[float, quantity("A", above=0, below=1e3)]
+SaturationCurrent = Annotated[float, quantity("A", above=1e-100, below=1)]
+Voltage = Annotated[float, quantity("V", above=0, below=1e4)]
+Resistance = Annotated[float, quantity("ohm", above=0, below=1e15)]
+Temperature = Annotated[float, quantity("K", at_least=1, below=1000)]
+Slope = Annotated[float, quantity("1/K", above=-1, below=1)]
+Curvature = Annotated[float, quantity("1/K^2", above=-1, below=1)]
 Title = Annotated[str, _text(None, _LONGEST_LINE, False, _LINE_WORDS)]
 Name = Annotated[str, _text(_NAME, _LONGEST_NAME, False, _NAME_WORDS)]
 Text = Annotated[str, _text(None, _LONGEST_LINE, True, _LINE_WORDS)]

@@ -64,7 +64,6 @@ class Model(BaseModel):
 
 def quoted(key: str) -> str:
     """Return a key as TOML writes it: bare where it can be."""
-    key = key.lstrip(INTERNAL)
     return key if _PLAIN_KEY.fullmatch(key) else shown(key)
 
 
@@ -83,7 +82,7 @@ def _one(error: Any, tags: frozenset[str]) -> str:
     for part in error["loc"]:
         if isinstance(part, int):
             path += f"[{part}]"
-        elif part not in tags:
+        elif part not in tags and not part.startswith(INTERNAL):
             path += f".{quoted(part)}"
     key = context.get("key", "") if error["type"] == "refused" else ""
     path += key if key.startswith("[") else f".{key}" if key else ""

@@ -21,11 +21,20 @@ from tcopt.units import shown
 __all__ = ["load_process", "load_study"]
 
 _LONGEST_PATH = 1000
+_LONGEST_LINE = 8000
 
 
 def _read_toml(path: Path) -> dict[str, Any]:
+    text = read_text(path)
+    # The parser's time and memory go with the square of a dotted key's length.
+    for number, line in enumerate(text.splitlines(), 1):
+        if len(line) > _LONGEST_LINE:
+            raise InputError(
+                f"{path}: line {number}: found {len(line)} characters; "
+                f"accepted: lines of at most {_LONGEST_LINE}"
+            )
     try:
-        return tomllib.loads(read_text(path))
+        return tomllib.loads(text)
     except RecursionError:
         problem = "values nested too deeply"
     except ValueError as error:  # TOMLDecodeError, and numbers of too many digits
@@ -74,7 +83,7 @@ def load_study(path: str | Path) -> Study:
         if "file" in target:
             wanted = "the path of a CSV file, from this file's folder"
             file = _beside(path, target["file"], "target.file", wanted)
-            target |= {"file": file.resolve(), f"{INTERNAL}curve": read_curve(file)}
+            target |= {f"{INTERNAL}curve": read_curve(file), "file": file.resolve()}
     try:
         return Study.model_validate(data, by_alias=True, by_name=False, context=FromFile(process))
     except ValidationError as error:

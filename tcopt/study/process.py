@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-import sys
 from collections.abc import Mapping
 from pathlib import Path
 from typing import Annotated, Any
@@ -17,6 +16,7 @@ from tcopt.study.fields import (
     Fraction,
     Name,
     Resistance,
+    SaturationCurrent,
     Slope,
     Temperature,
     Text,
@@ -25,7 +25,7 @@ from tcopt.study.fields import (
     quantity,
     refusal,
 )
-from tcopt.study.gate import INTERNAL, Model
+from tcopt.study.gate import INTERNAL, Model, quoted
 from tcopt.units import shown
 
 __all__ = ["BaseEmitter", "Material", "Process", "Transistor"]
@@ -108,7 +108,7 @@ class Transistor(Model):
     name: Name = Field(validation_alias=f"{INTERNAL}name")
     reference: Temperature
     base_emitter: BaseEmitter | None = None
-    saturation_current: Current = Field(default=None, validate_default=True)
+    saturation_current: SaturationCurrent = Field(default=None, validate_default=True)
     bandgap_voltage: Voltage
     temperature_exponent: _Exponent
     current_gain: _Positive | None = None
@@ -129,13 +129,7 @@ class Transistor(Model):
                 raise refusal("nothing", either)
             return value
         thermal_voltage = Boltzmann * info.data["reference"] / elementary_charge
-        made = point.current * math.exp(-point.voltage / thermal_voltage)
-        if made < sys.float_info.min:
-            raise refusal(
-                "a base-emitter point with no measurable saturation current",
-                "a junction's voltage and current, such as '0.65 V' and '10 uA'",
-            )
-        return made
+        return point.current * math.exp(-point.voltage / thermal_voltage)
 
 
 def _named(value: Any, info: ValidationInfo, example: str) -> Any:
@@ -144,7 +138,9 @@ def _named(value: Any, info: ValidationInfo, example: str) -> Any:
         if isinstance(value, Mapping):
             for key, entry in value.items():
                 if getattr(entry, "name", key) != key:
-                    raise refusal(f"{entry.name!r} under another name", "its own name", f"{key}")
+                    raise refusal(
+                        f"{entry.name!r} under another name", "its own name", quoted(str(key))
+                    )
         return value
     if not isinstance(value, Mapping):
         raise refusal(shown(value), f"tables such as {example}")

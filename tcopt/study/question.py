@@ -9,6 +9,7 @@ from typing import Annotated, Any, Literal
 from pydantic import Discriminator, Field, Tag, ValidationInfo, field_validator, model_validator
 
 from tcopt.study.choices import MaterialName
+from tcopt.study.curve import Curve, first_problem
 from tcopt.study.fields import (
     Current,
     Resistance,
@@ -39,7 +40,7 @@ GRADES: dict[str, tuple[float, float]] = {
 }
 """Ambient ranges [K]: the grades of AEC-Q100, and those of common practice."""
 
-_HOTTEST = 1000.0
+_EITHER = f"either from and to, or grade = {', '.join(repr(grade) for grade in GRADES)}"
 _MOST_PARTS = 16
 _MOST_PIECES = 4
 
@@ -52,21 +53,26 @@ class TemperatureRange(Model):
     high: Temperature = Field(default=None, validation_alias="to", validate_default=True)
     reference: Temperature = Field(default=parse("27 degC", "K"), validate_default=True)
 
+    @model_validator(mode="before")
+    @classmethod
+    def _graded_or_given(cls, data: Any, info: ValidationInfo) -> Any:
+        if isinstance(data, Mapping) and data.get("grade") is None:
+            for key in ("low", "high") if info.context is None else ("from", "to"):
+                if key not in data:
+                    raise refusal("nothing", _EITHER, key)
+        return data
+
     @field_validator("low", "high", mode="before")
     @classmethod
-    def _given_or_graded(cls, value: Any, info: ValidationInfo) -> Any:
-        either = f"either from and to, or grade = {', '.join(repr(grade) for grade in GRADES)}"
+    def _of_the_grade(cls, value: Any, info: ValidationInfo) -> Any:
         if "grade" not in info.data:
             return 300.0  # The grade was refused already; that is the message to give.
         grade = info.data["grade"]
-        if value is None and grade is None:
-            raise refusal("nothing", either)
         if grade is None:
             return value
-        limit = GRADES[grade][0 if info.field_name == "low" else 1]
-        if value is not None and value != limit:
-            raise refusal(f"{shown(value)} beside grade {grade!r}", either)
-        return limit
+        if value is not None:
+            raise refusal(f"{shown(value)} beside grade {grade!r}", _EITHER)
+        return GRADES[grade][0 if info.field_name == "low" else 1]
 
     @model_validator(mode="after")
     def _rising(self) -> TemperatureRange:
@@ -75,10 +81,6 @@ class TemperatureRange(Model):
                 f"{format_quantity(self.high, 'K')}, not above {format_quantity(self.low, 'K')}",
                 "a range that rises",
                 "to",
-            )
-        if self.high > _HOTTEST:
-            raise refusal(
-                format_quantity(self.high, "K"), f"at most {format_quantity(_HOTTEST, 'K')}", "to"
             )
         if not self.low <= self.reference <= self.high:
             inside = f"{format_quantity(self.low, 'K')} to {format_quantity(self.high, 'K')}"
@@ -115,10 +117,6 @@ def _limit(value: Any) -> Any:
     return Limit(kind=kind, value=number)
 
 
-Curve = tuple[tuple[float, ...], tuple[float, ...]]
-"""Temperatures [K], strictly rising, and the current [A] at each."""
-
-
 class Target(Model):
     """What the output current should do.
 
@@ -148,6 +146,14 @@ class Target(Model):
     @classmethod
     def _limit_of_either_kind(cls, value: Any) -> Any:
         return _limit(value)
+
+    @field_validator("curve")
+    @classmethod
+    def _curve_can_be_followed(cls, value: Curve | None) -> Curve | None:
+        problem = first_problem(value) if value is not None else None
+        if problem is not None:
+            raise refusal(problem.found, problem.accepted, f"[{problem.index}]")
+        return value
 
     @model_validator(mode="after")
     def _what_the_shape_takes(self) -> Target:

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from bisect import bisect_right
 from collections.abc import Iterable, Mapping
 from pathlib import Path
 from typing import Any
@@ -13,7 +12,7 @@ from pydantic import Field, ValidationInfo, field_validator, model_validator
 from tcopt.study.choices import Choice, is_single, scaled
 from tcopt.study.circuit import CircuitChoices
 from tcopt.study.fields import Title, refusal
-from tcopt.study.gate import INTERNAL, Model
+from tcopt.study.gate import INTERNAL, Model, quoted
 from tcopt.study.process import Material, Process
 from tcopt.study.question import (
     FixedSlot,
@@ -57,14 +56,16 @@ class Study(Model):
 
     @property
     def target_current(self) -> float:
-        """The target at the study's reference [A]; between points of a curve, on their chord."""
+        """The target at the study's reference [A]."""
         if self.target.current is not None:
             return self.target.current
-        assert self.target.curve is not None
-        temperatures, currents = self.target.curve
-        after = min(bisect_right(temperatures, self.range.reference), len(temperatures) - 1)
-        (t0, t1), (i0, i1) = temperatures[after - 1 : after + 1], currents[after - 1 : after + 1]
-        return i0 + (i1 - i0) * (self.range.reference - t0) / (t1 - t0)
+        # A curve alone states none, and how it runs between its points is told in one place.
+        import numpy as np  # noqa: PLC0415
+
+        from tcopt.targets import target_current  # noqa: PLC0415
+
+        reference = self.range.reference
+        return float(target_current(self.target, reference).current(np.array([reference]))[0])
 
     @property
     def input_currents(self) -> Choice | None:
@@ -94,7 +95,7 @@ class Study(Model):
         accepted = ", ".join(f"{slot.name} ({slot.meaning})" for slot in slots)
         for name in self.resistors:
             if name not in {slot.name for slot in slots}:
-                raise refusal("an unknown slot", accepted, f"resistors.{name}")
+                raise refusal("an unknown slot", accepted, f"resistors.{quoted(name)}")
         for slot in slots:
             if not slot.optional and slot.name not in self.resistors:
                 raise refusal(

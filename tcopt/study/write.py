@@ -6,6 +6,8 @@ import os
 from pathlib import Path
 from typing import Any
 
+import tomlkit
+
 from tcopt.errors import InputError
 from tcopt.study.choices import Choice, Span
 from tcopt.study.question import FixedSlot, Limit, OpenSlot
@@ -13,6 +15,8 @@ from tcopt.study.study import Study
 from tcopt.units import exact
 
 __all__ = ["study_text"]
+
+_WIDEST = 80
 
 
 def _from(folder: Path, path: Path) -> str:
@@ -32,8 +36,6 @@ def _choice(choice: Choice, unit: str) -> Any:
         return _number(value) if unit == "1" else exact(value, unit)
 
     if isinstance(choice, Span):
-        import tomlkit  # noqa: PLC0415
-
         ends = tomlkit.inline_table()
         ends.update({"from": written(choice.low), "to": written(choice.high)})
         return ends
@@ -95,15 +97,15 @@ def _target(study: Study, folder: Path) -> dict[str, Any]:
 
 def _slot(slot: FixedSlot | OpenSlot) -> dict[str, Any]:
     if isinstance(slot, FixedSlot):
-        import tomlkit  # noqa: PLC0415
-
         parts = tomlkit.array()
         for part in slot.parts:
             entry = tomlkit.inline_table()
             entry.update({"material": part.material.name, "value": exact(part.value, "ohm")})
             parts.append(entry)
         return {"parts": parts.multiline(len(slot.parts) > 1), "join": slot.join}
-    names = [material.name for material in slot.materials]
+    names = tomlkit.array()
+    names.extend(material.name for material in slot.materials)
+    names.multiline(len(names.as_string()) > _WIDEST)
     return {"materials": names, "pieces": slot.pieces, "join": slot.join}
 
 
@@ -119,8 +121,6 @@ def study_text(study: Study, folder: str | Path) -> str:
     ------
     InputError : the process or the curve came from no file, so that no path can name it
     """
-    import tomlkit  # noqa: PLC0415
-
     if study.process.path is None:
         raise InputError("process: found no file; accepted: a process read from a file")
     folder = Path(folder)
