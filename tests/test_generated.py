@@ -114,7 +114,7 @@ def test_every_formula_is_compared(path: Path) -> None:
             bad = text[:gap_start] + gap + text[gap_end:]
             assert difference(text, bad), bad[gap_start - 40 : gap_end + 40]
             spoiled += 1
-    assert spoiled or path.stem == "reference_over_resistor_self"
+    assert spoiled or path.stem.startswith("reference_over_resistor")
 
 
 def _offset(text: str, line: int | None, column: int | None) -> int:
@@ -124,7 +124,7 @@ def _offset(text: str, line: int | None, column: int | None) -> int:
 
 
 def test_a_reordered_sum_is_the_same_and_another_name_is_not() -> None:
-    text = DERIVED[HOUSE / "circuits" / "generated" / "ptat_core_self.py"]
+    text = next(text for path, text in DERIVED.items() if path.stem.startswith("ptat_core"))
     assert difference(text, text.replace("log(M) + log(N)", "log(N) + log(M)")) is None
     assert "names" in str(difference(text, text.replace("R_core", "R_other")))
     assert "names" in str(difference(text, text.replace("from numpy", "from math")))
