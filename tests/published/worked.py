@@ -12,6 +12,7 @@ from scipy.optimize import brentq
 from tcopt.laws import generated as laws
 from tcopt.laws.numbers import VOLT_PER_KELVIN
 from tcopt.solve import currents, needed_resistance, numerics, sensitivities
+from tests import junction
 
 __all__ = ["Sum", "flat_at", "needed", "output", "slope", "widlar"]
 
@@ -59,7 +60,7 @@ class Sum:
         """Return the circuit's quantities at temperatures [K]."""
         V_T0 = laws.thermal_voltage(self.T_0, VOLT_PER_KELVIN)
         at_reference = np.log(V_T0 * np.log(self.N) / self.R_core) - self.V_BE / V_T0
-        grown = laws.log_saturation_growth(T, self.T_0, self.eta, self.V_G0, VOLT_PER_KELVIN)
+        grown = junction.log_saturation_growth(T, self.T_0, self.eta, self.V_G0)
         return {
             "N": self.N,
             "M": 1.0,
@@ -75,7 +76,7 @@ class Sum:
 
     def slope(self, T: Any) -> Any:
         """Return its relative slope [1/K]; the resistors have none."""
-        law = laws.log_saturation_slope(T, self.T_0, self.eta, self.V_G0, VOLT_PER_KELVIN)
+        law = junction.log_saturation_slope(T, self.T_0, self.eta, self.V_G0)
         moving = {"V_T": 1 / T, "log_I_S": law}
         return slope("ptat plus vbe", "self", self.quantities(T), moving)
 
