@@ -31,8 +31,8 @@ STUDY_REFUSALS = [
     ({"target.Shape": "flat"}, "target.Shape: found an unknown key"),
     ({"resistors.output.material": "poly"}, "resistors.output.material: found an unknown key"),
     (
-        {"resistors.output": {"parts": [{"material": "poly", "value": 1, "width": 1}]}},
-        "resistors.output.parts[0].width: found an unknown key; accepted: material, value",
+        {"resistors.output": {"parts": [{"material": "poly", "value": 1, "colour": 1}]}},
+        "resistors.output.parts[0].colour: found an unknown key; accepted: material, value, width",
     ),
     ({"search.rows": 1}, "search.rows: found an unknown key; accepted: digits, show"),
     *(({key: GONE}, f"{key}: found nothing; accepted: ") for key in STUDY if key != "resistors"),

@@ -2,6 +2,7 @@
 
 from tcopt.study.choices import Choice, Span
 from tcopt.study.circuit import CircuitChoices
+from tcopt.study.deviations import CommonPart
 from tcopt.study.load import load_process, load_study
 from tcopt.study.process import BaseEmitter, Material, Process, Transistor
 from tcopt.study.question import (
@@ -14,12 +15,14 @@ from tcopt.study.question import (
     Target,
     TemperatureRange,
 )
+from tcopt.study.spread import OUTPUT_MIRROR, Insertion, Spread, Trim
 from tcopt.study.start import write_first_study
 from tcopt.study.study import Study
 from tcopt.study.write import study_text
 
 __all__ = [
-    "GRADES", "BaseEmitter", "Choice", "CircuitChoices", "FixedSlot", "Limit", "Material",
-    "OpenSlot", "Part", "Process", "Search", "Span", "Study", "Target", "TemperatureRange",
-    "Transistor", "load_process", "load_study", "study_text", "write_first_study",
+    "GRADES", "OUTPUT_MIRROR", "BaseEmitter", "Choice", "CircuitChoices", "CommonPart",
+    "FixedSlot", "Insertion", "Limit", "Material", "OpenSlot", "Part", "Process", "Search",
+    "Span", "Spread", "Study", "Target", "TemperatureRange", "Transistor", "Trim", "load_process",
+    "load_study", "study_text", "write_first_study",
 ]  # fmt: skip

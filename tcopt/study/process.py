@@ -4,16 +4,17 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping
+from contextlib import suppress
 from pathlib import Path
 from typing import Annotated, Any
 
-from pydantic import Field, ValidationInfo, field_validator
+from pydantic import Field, ValidationInfo, field_validator, model_validator
 from scipy.constants import Boltzmann, elementary_charge
 
+from tcopt.study.deviations import Area, CommonParts, deviation
 from tcopt.study.fields import (
     Current,
     Curvature,
-    Fraction,
     Name,
     Resistance,
     SaturationCurrent,
@@ -26,15 +27,26 @@ from tcopt.study.fields import (
     refusal,
 )
 from tcopt.study.gate import INTERNAL, Model, quoted
-from tcopt.units import shown
+from tcopt.units import parse, shown
 
-__all__ = ["BaseEmitter", "Material", "Process", "Transistor"]
+__all__ = ["BaseEmitter", "Length", "Material", "Process", "Transistor"]
 
-_Length = Annotated[float, quantity("m", above=0)]
+_COARSEST_MATCHING = 1e-4
+_PAIR_MATCHING_WORDS = (
+    "a matching coefficient of V_BE such as '0.5 mV um', or of the saturation current such as "
+    "'2 % um', or a bare number in m, at least 0 and below 1e-4 m"
+)
+Length = Annotated[float, quantity("m", above=0, below=1)]
 _Matching = Annotated[
     float,
     quantity("m", "a matching coefficient such as '2 % um', or a bare number in m", at_least=0),
 ]
+_SheetSpread = Annotated[float, deviation("1", "5 %", below=0.2)]
+_FirstOrderSpread = Annotated[float, deviation("1/K", "100 ppm/K", below=0.01)]
+_SecondOrderSpread = Annotated[float, deviation("1/K^2", "0.1 ppm/K^2", below=1e-4)]
+_SaturationSpread = Annotated[float, deviation("1", "20 %", below=1)]
+_VoltageSpread = Annotated[float, deviation("V", "3 mV", below=0.1)]
+_GainSpread = Annotated[float, deviation("1", "20 %", below=1)]
 _Positive = Annotated[float, quantity("1", "a pure number", above=0)]
 _Exponent = Annotated[float, quantity("1", "a pure number", at_least=-10, below=10)]
 
@@ -51,6 +63,9 @@ class Material(Model):
     tc1, tc2 : temperature coefficients [1/K], [1/K^2]
     sheet_resistance : per square, at the reference [ohm]
     spread : one standard deviation of the sheet resistance, lot to lot [1]
+    tc1_spread, tc2_spread : one standard deviation of the coefficients [1/K], [1/K^2]
+    common : steps of the factory that other entries share, with their shares of the
+        variance of sheet resistance, tc1 and tc2
     matching : Pelgrom's coefficient: sigma(dR/R) times the root of the area [m]
     min_width : narrowest resistor drawn [m]
     valid : range in which the coefficients were fitted [K]
@@ -62,9 +77,12 @@ class Material(Model):
     tc1: Slope
     tc2: Curvature = 0.0
     sheet_resistance: Resistance | None = None
-    spread: Fraction | None = None
+    spread: _SheetSpread | None = None
+    tc1_spread: _FirstOrderSpread | None = None
+    tc2_spread: _SecondOrderSpread | None = None
+    common: CommonParts = ()
     matching: _Matching | None = None
-    min_width: _Length | None = None
+    min_width: Length | None = None
     valid: tuple[Temperature, Temperature] | None = None
     source: Text = ""
 
@@ -103,6 +121,16 @@ class Transistor(Model):
     temperature_exponent : of the saturation current [1]
     current_gain, current_gain_exponent : at the reference, and its power of temperature [1]
     early_voltage : [V]
+    saturation_current_spread : one standard deviation of the saturation current's
+        logarithm, lot to lot [1]
+    base_emitter_spread : instead of it, one standard deviation of V_BE at the reference
+        and a given current [V]
+    gain_spread : one standard deviation of the logarithm of the current gain [1]
+    common : steps of the factory that other entries share, with their shares of the
+        variance of saturation current and gain
+    matching : of a pair, Pelgrom's coefficient of ``ln I_S``: sigma times the root of the
+        emitter area of either [m]; from a file also of V_BE, as '1 mV um'
+    emitter_area : of the unit transistor, as drawn [m^2]
     """
 
     name: Name = Field(validation_alias=f"{INTERNAL}name")
@@ -114,6 +142,22 @@ class Transistor(Model):
     current_gain: _Positive | None = None
     current_gain_exponent: _Exponent = 0.0
     early_voltage: Voltage | None = None
+    saturation_current_spread: _SaturationSpread | None = None
+    base_emitter_spread: _VoltageSpread | None = None
+    gain_spread: _GainSpread | None = None
+    common: CommonParts = ()
+    matching: Annotated[float, Field(ge=0)] | None = None
+    emitter_area: Area | None = None
+
+    @property
+    def log_saturation_spread(self) -> float | None:
+        """One standard deviation of ``ln I_S`` [1], from whichever spread is given.
+
+        At a given current ``dV_BE = -V_T d(ln I_S)``, V_T at the reference.
+        """
+        if self.base_emitter_spread is None:
+            return self.saturation_current_spread
+        return float(self.base_emitter_spread * elementary_charge / (Boltzmann * self.reference))
 
     @field_validator("saturation_current", mode="before")
     @classmethod
@@ -130,6 +174,34 @@ class Transistor(Model):
             return value
         thermal_voltage = Boltzmann * info.data["reference"] / elementary_charge
         return point.current * math.exp(-point.voltage / thermal_voltage)
+
+
+    @field_validator("matching", mode="before")
+    @classmethod
+    def _of_current_or_voltage(cls, value: Any, info: ValidationInfo) -> Any:
+        if value is None or "reference" not in info.data:
+            return None
+        found = None
+        for unit, per_metre in (
+            ("m", 1.0),
+            ("V m", elementary_charge / (Boltzmann * info.data["reference"])),
+        ):
+            with suppress(ValueError):
+                found = parse(value, unit) * per_metre
+                break
+        if found is None or not 0 <= found < _COARSEST_MATCHING:
+            raise refusal(shown(value), _PAIR_MATCHING_WORDS)
+        return found
+
+    @model_validator(mode="after")
+    def _one_spread(self) -> Transistor:
+        if self.saturation_current_spread is not None and self.base_emitter_spread is not None:
+            raise refusal(
+                "both",
+                "either saturation_current_spread or base_emitter_spread",
+                "base_emitter_spread",
+            )
+        return self
 
 
 def _named(value: Any, info: ValidationInfo, example: str) -> Any:

@@ -21,7 +21,7 @@ from tcopt.study.fields import (
     words,
 )
 from tcopt.study.gate import INTERNAL, Model
-from tcopt.study.process import Material
+from tcopt.study.process import Length, Material
 from tcopt.units import format_quantity, parse, shown
 
 __all__ = [
@@ -175,10 +175,26 @@ class Target(Model):
 
 
 class Part(Model):
-    """A resistor: its material, and its resistance at that material's reference [ohm]."""
+    """A resistor.
+
+    Attributes
+    ----------
+    material : what it is made of
+    value : resistance at that material's reference [ohm]
+    width : as drawn, for the area that matching goes with [m]
+    """
 
     material: MaterialName
     value: Resistance
+    width: Length | None = None
+
+    @property
+    def area(self) -> float | None:
+        """Drawn area [m^2]: squares times the width squared; None without the data for it."""
+        sheet = self.material.sheet_resistance
+        if self.width is None or sheet is None:
+            return None
+        return self.value / sheet * self.width**2
 
 
 Join = Annotated[Literal["series", "parallel"], words("series", "parallel")]

@@ -1,114 +1,137 @@
-"""How much parts vary, and how a study looks into it."""
+"""The tables [spread] and [trim]: how parts are drawn, and how they are set right again."""
 
 from __future__ import annotations
 
-from collections.abc import Mapping
-from typing import Annotated, Any, Literal
+from typing import Annotated, Literal
 
-from pydantic import BeforeValidator, Field, field_validator
+from pydantic import Field, model_validator
 
-from tcopt.study.fields import Check, Name, quantity, refusal, whole, words
-from tcopt.study.gate import Model, quoted
-from tcopt.units import shown
+from tcopt.study.deviations import deviation
+from tcopt.study.fields import Name, Temperature, quantity, refusal, whole, words
+from tcopt.study.gate import Model
+from tcopt.units import format_quantity
 
-__all__ = ["Area", "CommonPart", "CommonParts", "Spread", "deviation"]
+__all__ = ["OUTPUT_MIRROR", "Insertion", "Spread", "Trim"]
 
-_MOST_SAMPLES = 10**8
-_LARGEST_SEED = 2**63 - 1
-_LONGEST_LIST = 16
+OUTPUT_MIRROR = "output mirror"
+"""What a trim scales when it acts behind the circuit: the ratio of a mirror on its output."""
 
-Area = Annotated[
-    float,
-    quantity("m^2", "an area such as '4 um^2', or a bare number in m^2", above=0, below=1),
-]
+_Ratio = Annotated[float, deviation("1", "5 %", below=0.2)]
+_MEASUREMENT = deviation("1", "0.2 %", below=0.2)
+_TEMPERATURE = deviation("K", "2 K", below=50)
+_RANGE = quantity("1", "how far the scale reaches to either side, such as '20 %'", above=0, below=1)
+_STEP = quantity("1", "the step of the scale, such as '0.5 %'", above=0, below=1)
 
 
-def deviation(unit: str, example: str, *, below: float) -> Check:
-    """Return the check of a spread: one standard deviation, or a limit and the sigma it stands for.
+class Spread(Model):
+    """How samples of a finished design are drawn, and what must be reached.
 
-    ``"5 %"`` and ``{ limit = "15 %", sigma = 3 }`` are the same. What passes is the
-    standard deviation, in SI.
-
-    Parameters
+    Attributes
     ----------
-    unit : SI unit of the deviation
-    example : such as '5 %'
-    below : bound above which a deviation is no slip of the factory but of the pen
-    """
-    bound = f"{below:g}" if unit == "1" else f"{below:g} {unit}"
-    accepted = (
-        f"one standard deviation such as '{example}', at least 0 and below {bound}, or a limit "
-        f"and the sigma it stands for, such as {{ limit = '{example}', sigma = 3 }}"
-    )
-    size = quantity(unit, accepted, at_least=0)
-    multiple = quantity("1", "a pure number such as 3", above=0, below=10)
-
-    def check(value: Any) -> float:
-        divisor = 1.0
-        number = value
-        if isinstance(value, Mapping):
-            for key in value:
-                if key not in {"limit", "sigma"}:
-                    raise refusal("an unknown key", "limit, sigma", quoted(str(key)))
-            for key in ("limit", "sigma"):
-                if key not in value:
-                    raise refusal("nothing", accepted, key)
-            divisor = multiple.at(value["sigma"], "sigma")
-            number = value["limit"]
-        key = "limit" if isinstance(value, Mapping) else ""
-        found = float(size.at(number, key)) / divisor
-        if not found < below:
-            raise refusal(shown(number), accepted, key)
-        return found
-
-    return Check(check, accepted=accepted)
-
-
-_SHARE_WORDS = "a share of the variance such as 0.6, above 0 and at most 1"
-
-
-def _share(value: object) -> float:
-    number = quantity("1", _SHARE_WORDS, above=0).at(value, "")
-    if number > 1:
-        raise refusal(shown(value), _SHARE_WORDS)
-    return float(number)
-
-
-class CommonPart(Model):
-    """A step of the factory that entries share, and how much of an entry's variance is its doing.
-
-    Two entries that name the same part with shares a and b move together with
-    a correlation of ``sqrt(a b)``.
+    samples : parts drawn; powers of two serve 'sobol' best
+    seed : the same seed gives the same parts
+    sampling : 'sobol', scrambled; or 'plain', independent random numbers
+    sigma : how many standard deviations out the corners lie [1]
+    wanted_yield : share of the parts that must meet the target's limit [1]
+    supply, input_current, reference_voltage, mirror_ratio : one standard deviation of
+        what the study states, relative to it [1]
     """
 
-    part: Name
-    share: Annotated[float, Check(_share, accepted=_SHARE_WORDS)]
+    samples: Annotated[int, whole(1, 10**8)] = 16384
+    seed: Annotated[int, whole(0, 2**63 - 1)] = 1
+    sampling: Annotated[Literal["sobol", "plain"], words("sobol", "plain")] = "sobol"
+    sigma: Annotated[float, quantity("1", "a pure number such as 3", above=0, below=10)] = 3.0
+    wanted_yield: Annotated[
+        float, quantity("1", "a share of the parts such as '99.7 %'", above=0, below=1)
+    ] = Field(default=0.997, validation_alias="yield")
+    supply: _Ratio | None = None
+    input_current: _Ratio | None = None
+    reference_voltage: _Ratio | None = None
+    mirror_ratio: _Ratio | None = None
 
 
-def _listed(value: Any) -> Any:
-    if isinstance(value, (Mapping, CommonPart)):
-        return (value,)
-    if not isinstance(value, (list, tuple)) or len(value) > _LONGEST_LIST:
-        raise refusal(
-            shown(value), "a common part such as { part = 'poly_step', share = 0.6 }, or a list"
-        )
-    return value
+class Insertion(Model):
+    """One visit to the tester: the current is measured at a temperature, and a scale set by it.
+
+    Attributes
+    ----------
+    temperature : at which the part is believed to be [K]
+    scales : the resistor slot whose value is scaled, or `OUTPUT_MIRROR`
+    material : in that slot, the material whose parts alone are scaled; None for all
+    reach : the scale goes from 1 - reach to 1 + reach [1]
+    step : of the scale [1]
+    bits : instead of a step: the reach is cut into 2^bits codes
+    measurement_error : one standard deviation of the measured current, relative to it [1]
+    temperature_error : one standard deviation of the part's temperature [K]
+    """
+
+    temperature: Temperature
+    scales: Name
+    material: Name | None = None
+    reach: Annotated[float, _RANGE] = Field(validation_alias="range")
+    step: Annotated[float, _STEP] | None = None
+    bits: Annotated[int, whole(1, 16)] | None = None
+    measurement_error: Annotated[float, _MEASUREMENT] | None = None
+    temperature_error: Annotated[float, _TEMPERATURE] | None = None
+
+    @property
+    def increment(self) -> float | None:
+        """The step of the scale [1]; None where it is continuous."""
+        return 2 * self.reach / 2**self.bits if self.bits is not None else self.step
+
+    @property
+    def codes(self) -> tuple[int, int] | None:
+        """Lowest and highest code, 0 leaving the part as it is; None where it is continuous."""
+        if self.bits is not None:
+            return -(2 ** (self.bits - 1)), 2 ** (self.bits - 1) - 1
+        if self.step is None:
+            return None
+        most = int(self.reach / self.step * (1 + 1e-12))
+        return -most, most
+
+    @model_validator(mode="after")
+    def _one_kind_of_step(self) -> Insertion:
+        if self.step is not None and self.bits is not None:
+            raise refusal("both", "either step or bits, or neither for a continuous trim", "bits")
+        if self.step is not None and self.step > self.reach:
+            raise refusal(
+                f"a step of {100 * self.step:g} % with a range of {100 * self.reach:g} %",
+                "a step within the range, or there is no code but the one in the middle",
+                "step",
+            )
+        if self.material is not None and self.scales == OUTPUT_MIRROR:
+            raise refusal(
+                f"a material beside {OUTPUT_MIRROR!r}", "it with a resistor slot alone", "material"
+            )
+        return self
 
 
-def _within_the_whole(value: tuple[CommonPart, ...]) -> tuple[CommonPart, ...]:
-    names = [common.part for common in value]
-    for index, name in enumerate(names):
-        if name in names[:index]:
-            raise refusal(f"{name!r} twice", "each part once", f"[{index}].part")
-    if (total := sum(common.share for common in value)) > 1 + 1e-12:
-        raise refusal(f"shares that add up to {total:g}", "shares of at most 1 in all")
-    return value
+class Trim(Model):
+    """One insertion, or two at different temperatures, the second for the slope."""
 
+    first: Insertion = Field(description="a table [trim.first]")
+    second: Insertion | None = None
 
-class _Commons:
-    """Fields of an entry that shares steps with others."""
+    @property
+    def insertions(self) -> tuple[Insertion, ...]:
+        """The insertions, first to last."""
+        return (self.first,) if self.second is None else (self.first, self.second)
 
-    before = BeforeValidator(_listed)
-
-
-CommonParts = Annotated[tuple[CommonPart, ...], _Commons.before]
+    @model_validator(mode="after")
+    def _two_that_differ(self) -> Trim:
+        if self.second is None:
+            return self
+        if abs(self.first.temperature - self.second.temperature) < 1:
+            raise refusal(
+                f"{format_quantity(self.second.temperature, 'K')}, where the first is",
+                "another temperature by at least 1 K: the slope shows between two",
+                "second.temperature",
+            )
+        knobs = [(each.scales, each.material) for each in self.insertions]
+        if knobs[0] == knobs[1]:
+            raise refusal(
+                f"{self.second.scales!r}, which the first scales already",
+                "another slot, another material of it, or the output mirror",
+                "second.scales",
+            )
+        return self

@@ -22,7 +22,8 @@ from tcopt.study.question import (
     Target,
     TemperatureRange,
 )
-from tcopt.units import format_quantity
+from tcopt.study.spread import OUTPUT_MIRROR, Insertion, Spread, Trim
+from tcopt.units import format_quantity, shown
 
 __all__ = ["Study"]
 
@@ -40,6 +41,8 @@ class Study(Model):
     target: Target = Field(description="a table [target]")
     resistors: dict[str, ResistorSlot] = Field(default_factory=dict)
     search: Search = Field(default_factory=Search)
+    spread: Spread = Field(default_factory=Spread)
+    trim: Trim | None = None
     path: Path | None = Field(default=None, validation_alias=f"{INTERNAL}path")
 
     @property
@@ -126,6 +129,33 @@ class Study(Model):
                     key,
                 )
         return self
+
+    @model_validator(mode="after")
+    def _trim_has_a_hold(self) -> Study:
+        for name in ("first", "second"):
+            insertion = getattr(self.trim, name, None)
+            if insertion is not None:
+                self._insertion_fits(insertion, f"trim.{name}")
+        return self
+
+    def _insertion_fits(self, insertion: Insertion, key: str) -> None:
+        if not self.range.low <= insertion.temperature <= self.range.high:
+            inside = " to ".join(format_quantity(t, "K") for t in (self.range.low, self.range.high))
+            found = format_quantity(insertion.temperature, "K")
+            raise refusal(found, f"inside the range, {inside}", f"{key}.temperature")
+        if insertion.scales == OUTPUT_MIRROR:
+            return
+        if insertion.scales not in self.resistors:
+            slots = ", ".join(repr(name) for name in (*self.resistors, OUTPUT_MIRROR))
+            raise refusal(shown(insertion.scales), slots, f"{key}.scales")
+        slot = self.resistors[insertion.scales]
+        if isinstance(slot, FixedSlot):
+            names = [part.material.name for part in slot.parts]
+        else:
+            names = [material.name for material in slot.materials]
+        if insertion.material is not None and insertion.material not in names:
+            accepted = f"a material of resistors.{insertion.scales}: {', '.join(names)}"
+            raise refusal(shown(insertion.material), accepted, f"{key}.material")
 
     @model_validator(mode="after")
     def _curve_covers_the_range(self) -> Study:

@@ -11,6 +11,7 @@ import tomlkit
 from tcopt.errors import InputError
 from tcopt.study.choices import Choice, Span
 from tcopt.study.question import FixedSlot, Limit, OpenSlot
+from tcopt.study.spread import Insertion, Spread, Trim
 from tcopt.study.study import Study
 from tcopt.units import exact
 
@@ -101,12 +102,52 @@ def _slot(slot: FixedSlot | OpenSlot) -> dict[str, Any]:
         for part in slot.parts:
             entry = tomlkit.inline_table()
             entry.update({"material": part.material.name, "value": exact(part.value, "ohm")})
+            if part.width is not None:
+                entry["width"] = exact(part.width, "m")
             parts.append(entry)
         return {"parts": parts.multiline(len(slot.parts) > 1), "join": slot.join}
     names = tomlkit.array()
     names.extend(material.name for material in slot.materials)
     names.multiline(len(names.as_string()) > _WIDEST)
     return {"materials": names, "pieces": slot.pieces, "join": slot.join}
+
+
+_SPREAD_RATIOS = ("supply", "input_current", "reference_voltage", "mirror_ratio")
+
+
+def _spread(spread: Spread) -> dict[str, Any]:
+    table: dict[str, Any] = {
+        "samples": spread.samples,
+        "seed": spread.seed,
+        "sampling": spread.sampling,
+        "sigma": _number(spread.sigma),
+        "yield": exact(spread.wanted_yield, "1"),
+    }
+    given = ((name, getattr(spread, name)) for name in _SPREAD_RATIOS)
+    return table | {name: exact(value, "1") for name, value in given if value is not None}
+
+
+def _insertion(insertion: Insertion) -> dict[str, Any]:
+    table: dict[str, Any] = {
+        "temperature": exact(insertion.temperature, "K"),
+        "scales": insertion.scales,
+    }
+    if insertion.material is not None:
+        table["material"] = insertion.material
+    table["range"] = exact(insertion.reach, "1")
+    if insertion.bits is not None:
+        table["bits"] = insertion.bits
+    for key in ("step", "measurement_error"):
+        if (value := getattr(insertion, key)) is not None:
+            table[key] = exact(value, "1")
+    if insertion.temperature_error is not None:
+        table["temperature_error"] = f"{insertion.temperature_error!r} K"
+    return table
+
+
+def _trim(trim: Trim) -> dict[str, Any]:
+    tables = {"first": _insertion(trim.first)}
+    return tables if trim.second is None else {**tables, "second": _insertion(trim.second)}
 
 
 def study_text(study: Study, folder: str | Path) -> str:
@@ -133,5 +174,7 @@ def study_text(study: Study, folder: str | Path) -> str:
             "target": _target(study, folder),
             "resistors": {name: _slot(slot) for name, slot in study.resistors.items()},
             "search": {"digits": study.search.digits, "show": study.search.show},
+            **({"spread": _spread(study.spread)} if study.spread != Spread() else {}),
+            **({"trim": _trim(study.trim)} if study.trim is not None else {}),
         }
     )
