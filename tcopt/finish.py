@@ -1,0 +1,50 @@
+"""From a design back to a study in which nothing is open: what `design` writes down."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from tcopt.circuits import GIVEN
+from tcopt.operation import Operation
+
+if TYPE_CHECKING:
+    from tcopt.study import Study
+
+__all__ = ["finished_study"]
+
+
+def finished_study(operation: Operation) -> Study:
+    """Return the study of a design, every slot with its parts and every choice settled.
+
+    Checked, it gives the very figures of the design.
+
+    Parameters
+    ----------
+    operation : a design with a mix in every slot that its study names
+    """
+    from tcopt.study import FixedSlot, Study  # noqa: PLC0415  this layer lies below the gate
+
+    study, choices = operation.study, operation.choices
+    made = study.circuit
+    settled: dict[str, object] = {
+        name: (getattr(choices, name),) for name in made.circuit.choices
+    }
+    if made.feed == GIVEN:
+        settled |= {"input_current": (choices.input_current,), "current_ratio": None}
+    given = {name: getattr(made, name) for name in made.model_fields_set}
+    resistors = {
+        name: FixedSlot(parts=operation.mixes[name].parts, join=operation.mixes[name].join)
+        for name in study.resistors
+    }
+    return Study(
+        title=study.title,
+        process=study.process,
+        range=study.range,
+        circuit=type(made)(**{**given, **settled}),
+        target=study.target,
+        resistors=resistors,
+        search=study.search,
+        spread=study.spread,
+        trim=study.trim,
+        path=study.path,
+    )

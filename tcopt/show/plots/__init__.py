@@ -1,0 +1,20 @@
+"""Pictures of results, one kind a file; each function returns a matplotlib figure.
+
+matplotlib is slow to import, so nothing imports this package before a picture is wanted.
+"""
+
+from tcopt.show.plots.causes import causes_picture
+from tcopt.show.plots.curves import current_picture, residual_picture
+from tcopt.show.plots.encode import encoded
+from tcopt.show.plots.map import menu_map, resistor_map
+from tcopt.show.plots.ratio import ratio_picture
+
+__all__ = [
+    "causes_picture",
+    "current_picture",
+    "encoded",
+    "menu_map",
+    "ratio_picture",
+    "residual_picture",
+    "resistor_map",
+]
