@@ -8,7 +8,7 @@ from tcopt.circuits import GIVEN
 from tcopt.operation import Operation
 
 if TYPE_CHECKING:
-    from tcopt.study import Study
+    from tcopt.study import OpenSlot, Study
 
 __all__ = ["finished_study"]
 
@@ -26,14 +26,14 @@ def finished_study(operation: Operation) -> Study:
 
     study, choices = operation.study, operation.choices
     made = study.circuit
-    settled: dict[str, object] = {
-        name: (getattr(choices, name),) for name in made.circuit.choices
-    }
+    settled: dict[str, object] = {name: (getattr(choices, name),) for name in made.circuit.choices}
     if made.feed == GIVEN:
         settled |= {"input_current": (choices.input_current,), "current_ratio": None}
     given = {name: getattr(made, name) for name in made.model_fields_set}
-    resistors = {
-        name: FixedSlot(parts=operation.mixes[name].parts, join=operation.mixes[name].join)
+    resistors: dict[str, FixedSlot | OpenSlot] = {
+        name: FixedSlot.model_validate(
+            {"parts": operation.mixes[name].parts, "join": operation.mixes[name].join}
+        )
         for name in study.resistors
     }
     return Study(

@@ -22,6 +22,7 @@ if TYPE_CHECKING:
 
 __all__ = [
     "FALLS_SHORT", "MATCHES", "OVER_COMPENSATES", "TOLERANCE", "Menu", "MenuEntry", "menu",
+    "menu_range",
 ]  # fmt: skip
 
 FALLS_SHORT, MATCHES, OVER_COMPENSATES = "falls short of", "matches", "over-compensates"
@@ -110,3 +111,36 @@ def _drift(
     points = extreme_points(current, low, high)
     deviation = float(np.abs(current(points) / at_reference - 1).max())
     return drift_of(current, left, deviation, low, high, reference)
+
+
+def menu_range(grade: str | None, low: str | None, high: str | None) -> TemperatureRange:
+    """Return the range that these words name, the industrial one without any.
+
+    Parameters
+    ----------
+    grade : such as 'automotive 0', or None
+    low, high : temperatures with their unit, or None
+
+    Raises
+    ------
+    InputError
+        If they name no range, or two.
+    """
+    from pydantic import ValidationError  # noqa: PLC0415
+
+    from tcopt.study import TemperatureRange  # noqa: PLC0415  the gate is slow to import
+    from tcopt.study.choices import FromFile  # noqa: PLC0415
+    from tcopt.study.gate import refused_input  # noqa: PLC0415
+
+    words = {"grade": grade, "from": low, "to": high}
+    given = {name: word for name, word in words.items() if word is not None}
+    if not given:
+        given = {"grade": "industrial"}
+    if low is not None:
+        given["reference"] = low  # it plays no part here; it only has to lie inside
+    try:
+        return TemperatureRange.model_validate(
+            given, by_alias=True, by_name=False, context=FromFile()
+        )
+    except ValidationError as error:
+        raise refused_input("range", error) from None

@@ -138,9 +138,7 @@ def ratio_sweep(found: Assessment, slot: str) -> RatioSweep:
 
 def _with_share(mix: Mix, share: float, total: float) -> Mix:
     """Return the mix with another ratio at the same total; a part without share is left out."""
-    invert: Callable[[float], float] = (
-        (lambda w: w) if mix.join == "series" else (lambda w: 1 / w)
-    )
+    invert: Callable[[float], float] = (lambda w: w) if mix.join == "series" else (lambda w: 1 / w)
     parts = tuple(
         part.model_copy(update={"value": invert(weight * total)})
         for part, weight in zip(mix.parts, (share, 1 - share), strict=True)

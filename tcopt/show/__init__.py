@@ -1,0 +1,1 @@
+"""Results for the eye and for other programs: documents, tables, pictures; computes nothing."""

@@ -7,6 +7,8 @@ from collections.abc import Iterable, Sequence
 from io import StringIO
 from typing import TYPE_CHECKING
 
+import numpy as np
+
 from tcopt.show.words import mix_words
 
 if TYPE_CHECKING:
@@ -38,7 +40,7 @@ def sweep_csv(result: CheckResult) -> str:
     columns |= {f"{name} [A]": current for name, current in result.currents.items()}
     causes = result.assessment.operation.causes(T)
     columns |= {f"{cause} [ppm/K]": 1e6 * share for cause, share in causes.items()}
-    columns["all causes [ppm/K]"] = 1e6 * sum(causes.values())
+    columns["all causes [ppm/K]"] = 1e6 * np.sum(list(causes.values()), axis=0)
     rows = zip(*(column.tolist() for column in columns.values()), strict=True)
     return _table(list(columns), rows)
 

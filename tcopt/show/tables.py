@@ -17,7 +17,6 @@ from tcopt.circuits import GIVEN
 from tcopt.menu import TOLERANCE
 from tcopt.show.words import (
     circuit_words,
-    figure_words,
     number,
     range_words,
     target_words,
@@ -78,9 +77,7 @@ def check_report(result: CheckResult) -> RenderableType:
     found, study = result.assessment, result.study
     choices = found.operation.choices
     over = study.range
-    circuit = circuit_words(
-        study, choices.area_ratio, choices.mirror_ratio, choices.input_current
-    )
+    circuit = circuit_words(study, choices.area_ratio, choices.mirror_ratio, choices.input_current)
     parts: list[RenderableType] = [
         Text(study.title, style="bold"),
         Text(f"{circuit}; target {target_words(study)}"),
@@ -376,5 +373,3 @@ def menu_report(found: Menu) -> RenderableType:
         _heading("Data (spread: one standard deviation of the sheet resistance, lot to lot)"),
         data,
     )
-
-

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from textwrap import fill
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from matplotlib.figure import Figure
@@ -23,17 +23,18 @@ from tcopt.show.plots.style import (
     with_title,
 )
 from tcopt.show.words import range_words
+
 if TYPE_CHECKING:
     from tcopt.assess import Assessment
 
 __all__ = ["causes_picture"]
 
-_POINTS = 241
+_POINTS = 97
 _LINE = 22
 """Characters after which a cause's name is broken."""
 _LAYERS = (
-    (BLUE, ""), (ORANGE, "////"), (SKY, ""), (VERMILLION, "...."), ("#f0e442", "xxx"),
-    (GREEN, "\\\\\\\\"), ("#cc79a7", "++"), ("#bbbbbb", "oo"),
+    (BLUE, ""), (ORANGE, "///"), (SKY, ""), (VERMILLION, ".."), ("#f0e442", "xxx"),
+    (GREEN, "\\\\\\"), ("#cc79a7", "++"), ("#bbbbbb", "o"),
 )  # fmt: skip
 """Colour and hatch of each layer, largest first; the last is for all that is left over."""
 
@@ -55,7 +56,7 @@ def causes_picture(found: Assessment) -> Figure:
     above, below = np.zeros_like(T), np.zeros_like(T)
     for (name, share), (colour, hatch) in zip(causes.items(), _LAYERS, strict=False):
         up, down = np.maximum(share, 0), np.minimum(share, 0)
-        look = {"facecolor": colour, "hatch": hatch, "edgecolor": INK, "linewidth": 0.5}
+        look: Any = {"facecolor": colour, "hatch": hatch, "edgecolor": INK, "linewidth": 0.5}
         axes.fill_between(celsius, above, above + up, label=fill(name, _LINE), **look)
         axes.fill_between(celsius, below, below + down, **look)
         above, below = above + up, below + down

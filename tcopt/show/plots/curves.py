@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -11,7 +12,6 @@ from matplotlib.figure import Figure
 from tcopt.arrays import Array
 from tcopt.show.plots.labels import Label, place
 from tcopt.show.plots.style import (
-    BLUE,
     GREEN,
     GREY,
     INK,
@@ -24,8 +24,14 @@ from tcopt.show.plots.style import (
     temperature_axis,
     with_title,
 )
-from tcopt.show.words import DEFINITIONS, figure_words, number, range_words, target_words, verdict_words
-from tcopt.units import format_quantity
+from tcopt.show.words import (
+    DEFINITIONS,
+    figure_words,
+    number,
+    range_words,
+    target_words,
+    verdict_words,
+)
 
 if TYPE_CHECKING:
     from tcopt.assess import Assessment
@@ -54,7 +60,15 @@ def current_picture(found: Assessment) -> Figure:
     scale, unit = prefixed(float(max(current.max(), target.max())), "A")
     figure, axes = new_figure()
     celsius = T - _ZERO_CELSIUS
-    axes.plot(celsius, scale * target, color=ORANGE, linewidth=5, solid_capstyle="butt", label="target", zorder=2)
+    axes.plot(
+        celsius,
+        scale * target,
+        color=ORANGE,
+        linewidth=5,
+        solid_capstyle="butt",
+        label="target",
+        zorder=2,
+    )
     axes.plot(celsius, scale * current, color=INK, linewidth=1.6, label="current", zorder=3)
     low, high = axes.get_ylim()
     middle, least = (low + high) / 2, _SMALLEST_SWING * scale * float(np.abs(current).max())
@@ -103,10 +117,10 @@ def residual_picture(found: Assessment) -> Figure:
     residual = 1e6 * found.residual(T)
     figure, axes = new_figure()
     axes.plot(T - _ZERO_CELSIUS, residual, color=INK, linewidth=1.8, zorder=3)
-    note = _band(axes, found, residual)
+    note = _band(axes, found)
     axes.axhline(0, color=GREY, linewidth=0.9, zorder=1)
     _reference_line(axes, study.range.reference)
-    axes.set_ylabel("I/I_target − 1 [ppm]")
+    axes.set_ylabel(pretty("I/I_target - 1 [ppm]"))
     axes.ticklabel_format(axis="y", useOffset=False, style="plain")
     temperature_axis(axes)
     axes.margins(x=0.06)
@@ -133,10 +147,10 @@ def residual_picture(found: Assessment) -> Figure:
 
 def _pieces(x: Array, y: Array) -> list[tuple[tuple[float, float], tuple[float, float]]]:
     points = list(zip(x[::8].tolist(), y[::8].tolist(), strict=True))
-    return list(zip(points, points[1:], strict=False))
+    return list(pairwise(points))
 
 
-def _band(axes: Axes, found: Assessment, residual: Array) -> str:
+def _band(axes: Axes, found: Assessment) -> str:
     """Draw the limit's band and return the words that explain it."""
     limit = found.limit
     if limit is None:

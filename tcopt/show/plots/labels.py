@@ -70,7 +70,6 @@ def place(
             label.x, label.y, label.text,
             fontsize=SMALL, fontweight="bold" if label.bold else "normal", color=INK,
             ha="center", va="center", linespacing=1.15, zorder=6,
-            path_effects=[withStroke(linewidth=2.5, foreground="white", alpha=0.85)],
         )  # fmt: skip
         size = text.get_window_extent()
         spot = min(
@@ -80,6 +79,8 @@ def place(
         )  # fmt: skip
         placed.append(spot)
         box = spot.box
+        if any(_crosses(a, b, box) for a, b in obstacles):
+            text.set_path_effects([withStroke(linewidth=2.5, foreground="white", alpha=0.85)])
         text.set_position(
             axes.transData.inverted().transform(((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2))
         )
@@ -145,9 +146,7 @@ def _distance(box: Bbox, x: float, y: float) -> float:
 
 
 def _outside(box: Bbox, frame: Bbox) -> bool:
-    return bool(
-        box.x0 < frame.x0 or box.x1 > frame.x1 or box.y0 < frame.y0 or box.y1 > frame.y1
-    )
+    return bool(box.x0 < frame.x0 or box.x1 > frame.x1 or box.y0 < frame.y0 or box.y1 > frame.y1)
 
 
 def _crosses(a: tuple[float, float], b: tuple[float, float], box: Bbox) -> bool:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Sequence
+from contextlib import suppress
 from textwrap import fill
 from typing import TYPE_CHECKING
 
@@ -70,7 +71,9 @@ def resistor_map(result: DesignResult, slot: str) -> Figure:
     away = _frame(axes, [*points, chosen], needed)
     lines = _hull(axes, points) + _lever_lines(axes, mix, reference, chosen)
     _mark_points(axes, materials, points, mix)
-    labels = [Label(*(away or needed), _needed_words(needed, away is not None), bold=True, radius=9)]
+    labels = [
+        Label(*(away or needed), _needed_words(needed, away is not None), bold=True, radius=9)
+    ]
     if away is None:
         axes.plot(*needed, "o", ms=15, mfc="none", mec=VERMILLION, mew=2.2, zorder=5)
     axes.plot(*chosen, "D", ms=6, mfc=BLUE, mec="white", mew=0.8, zorder=5)
@@ -129,14 +132,10 @@ def _menu_of(result: DesignResult, slot: str) -> tuple[Material, ...]:
     from tcopt.study import OpenSlot  # noqa: PLC0415  pictures lie below the gate
 
     open_slot = result.study.resistors[slot]
-    if not isinstance(open_slot, OpenSlot):
-        raise AssertionError(f"{slot} was not designed")
-    return open_slot.materials
+    return open_slot.materials if isinstance(open_slot, OpenSlot) else ()
 
 
-def _frame(
-    axes: Axes, points: Points, needed: tuple[float, float]
-) -> tuple[float, float] | None:
+def _frame(axes: Axes, points: Points, needed: tuple[float, float]) -> tuple[float, float] | None:
     """Set the axes to hold all points; a needed point far away is returned moved to the edge."""
     array = np.array(points)
     low, high = array.min(axis=0), array.max(axis=0)
@@ -169,14 +168,11 @@ def _outline(points: Array) -> Array:
     """Return the corners of the hull: a polygon, a piece of a line, or one point."""
     size = np.ptp(points, axis=0)
     scaled = (points - points.min(axis=0)) / np.where(size > 0, size, 1.0)
-    try:
-        if len(points) < 3:
-            raise QhullError
-        return np.asarray(points[ConvexHull(scaled).vertices])
-    except QhullError:
-        along = scaled @ (scaled[np.argmax(np.linalg.norm(scaled - scaled[0], axis=1))] - scaled[0])
-        ends = [int(np.argmin(along)), int(np.argmax(along))]
-        return points[sorted(set(ends))]
+    if len(points) > 2:
+        with suppress(QhullError):  # all on one line
+            return np.asarray(points[ConvexHull(scaled).vertices])
+    along = scaled @ (scaled[np.argmax(np.linalg.norm(scaled - scaled[0], axis=1))] - scaled[0])
+    return points[sorted({int(np.argmin(along)), int(np.argmax(along))})]
 
 
 def _lever_lines(
@@ -261,10 +257,11 @@ def _finding(result: DesignResult, slot: str) -> str:
 def _context(result: DesignResult, slot: str) -> str:
     left = result.winner.residual_drift
     point = result.needed[slot]
-    value = pretty(format_quantity(point.resistance, "ohm"))
+    value = format_quantity(point.resistance, "ohm")
+    tc1, tc2 = number(_PPM * point.tc1), number(_PPM * point.tc2, 3)
+    needed = pretty(f"Needed: {value}, TC1 {tc1} ppm/K, TC2 {tc2} ppm/K^2.")
     return (
-        f"{result.study.title}. Needed: {value}, TC1 {pretty(number(_PPM * point.tc1))} ppm/K, TC2 "
-        f"{pretty(number(_PPM * point.tc2, 3))} ppm/K². Remaining drift {pretty(range_words(result.study))}: "
+        f"{result.study.title}. {needed} Remaining drift {pretty(range_words(result.study))}: "
         f"{figure_words('box_ppm_per_K', left.box_ppm_per_K)}, "
         f"{figure_words('deviation_ppm', left.deviation_ppm)}"
     )

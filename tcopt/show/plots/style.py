@@ -62,8 +62,8 @@ _SETTINGS = {
 P = ParamSpec("P")
 
 
-def settings() -> dict[str, Any]:
-    """Return the settings of the house, whatever the user's own matplotlib is set to."""
+def settings() -> Any:
+    """Return the settings of the house by key, whatever the user's matplotlib is set to."""
     usual = {key: mpl.rcParamsDefault[key] for key in mpl.rcParamsDefault if key != "backend"}
     return usual | _SETTINGS
 
