@@ -9,9 +9,9 @@ import numpy as np
 
 from tcopt.arrays import Array
 from tcopt.circuits import SUPPLY
+from tcopt.devices import diode_voltage
 from tcopt.drift import Drift, drift_of, extreme_points
 from tcopt.errors import NoSolutionError
-from tcopt.laws.numbers import log_saturation_current, thermal_voltage
 from tcopt.operation import Operation, celsius
 from tcopt.targets import TargetCurrent, target_current
 
@@ -63,7 +63,7 @@ class Assessment:
 
 
 def require_supply(study: Study, area_ratio: float) -> None:
-    """Refuse a supply below the base-emitter voltage that the target current takes.
+    """Refuse a supply below the junction or gate voltage that the target current takes.
 
     The loops then still have a solution, but one in which the junction, not the
     resistor, sets the current.
@@ -73,13 +73,12 @@ def require_supply(study: Study, area_ratio: float) -> None:
         return
     T = np.linspace(study.range.low, study.range.high, 61)
     current = target_current(study.target, study.range.reference).current(T)
-    V_BE = thermal_voltage(T) * (
-        np.log(current / area_ratio) - log_saturation_current(made.transistor, T)
-    )
+    V_BE = diode_voltage(made, current, area_ratio, T)
     worst = int(np.argmax(V_BE))
+    kind = "gate-source" if made.device == "mos" else "base-emitter"
     if made.supply <= V_BE[worst]:
         raise NoSolutionError(
-            f"circuit.supply: found {made.supply:.4g} V, below the base-emitter voltage of "
+            f"circuit.supply: found {made.supply:.4g} V, below the {kind} voltage of "
             f"{V_BE[worst]:.3f} V that the target current takes at {celsius(float(T[worst]))}; "
             "accepted: a supply above it over the whole range"
         )

@@ -16,14 +16,9 @@ from numpy.typing import ArrayLike
 
 from tcopt.arrays import Array
 from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
+from tcopt.devices import DeviceQuantity, device_quantities
 from tcopt.errors import NoSolutionError
-from tcopt.laws.numbers import (
-    log_saturation_current,
-    log_saturation_slope,
-    resistance_ratio,
-    resistance_ratio_slope,
-    thermal_voltage,
-)
+from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope, thermal_voltage
 from tcopt.solve import Numerics, currents, needed_resistance, numerics, sensitivities
 from tcopt.symbols import resistance_name
 
@@ -101,7 +96,12 @@ class Operation:
     @cached_property
     def circuit(self) -> Numerics:
         """The numerics of the study's circuit."""
-        return numerics(self.study.circuit.topology, self.study.circuit.feed)
+        made = self.study.circuit
+        return numerics(made.topology, made.feed, made.device)
+
+    @cached_property
+    def _device(self) -> dict[str, DeviceQuantity]:
+        return device_quantities(self.study.circuit)
 
     def quantities(self, temperature: ArrayLike) -> dict[str, Array]:
         """Return the circuit's quantities at temperatures [K], shorts and absent ones included."""
@@ -112,8 +112,7 @@ class Operation:
             "N": np.asarray(self.choices.area_ratio),
             "M": np.asarray(self.choices.mirror_ratio),
         }
-        if made.transistor is not None:
-            found["log_I_S"] = log_saturation_current(made.transistor, T)
+        found |= {name: quantity.value(T) for name, quantity in self._device.items()}
         d = T - self.study.range.reference
         if self.choices.input_current is not None and made.feed == GIVEN:
             ratio = 1 + made.input_tc1 * d + made.input_tc2 * d**2
@@ -153,7 +152,7 @@ class Operation:
 
     def output(self, temperature: ArrayLike) -> Array:
         """Return the output current [A] at temperatures [K]."""
-        return self.currents(temperature)[self.circuit.unknowns[-1]]
+        return self.currents(temperature)[self.circuit.currents[-1]]
 
     def needed(self, slot: str, output: ArrayLike, temperature: ArrayLike) -> Array:
         """Return the resistance [ohm] that an open slot needs for this output [A]."""
@@ -162,7 +161,7 @@ class Operation:
     def sensitivities(self, temperature: ArrayLike, of: str = "I_out") -> dict[str, Array]:
         """Return ``d ln I/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`)."""
         T = np.asarray(temperature, dtype=float)
-        return sensitivities(self.circuit, self.quantities(T), self.currents(T), of)
+        return sensitivities(self.circuit, self.quantities(T), of)
 
     def causes(self, temperature: ArrayLike) -> dict[str, Array]:
         """Return the output's local temperature coefficient [1/K], split into its causes.
@@ -175,8 +174,9 @@ class Operation:
         made = self.study.circuit
         d = T - self.study.range.reference
         slopes: dict[tuple[str, str], Array] = {("V_T", "thermal voltage"): 1 / T}
-        if "log_I_S" in by_quantity and made.transistor is not None:
-            slopes["log_I_S", "junction law"] = log_saturation_slope(made.transistor, T)
+        for name, quantity in self._device.items():
+            if quantity.cause:
+                slopes[name, quantity.cause] = quantity.slope(T)
         for symbol, cause, tc1, tc2 in (
             ("I_given", "input current", made.input_tc1, made.input_tc2),
             ("V_ref", "reference voltage", made.reference_tc1, made.reference_tc2),

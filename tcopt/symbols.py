@@ -9,7 +9,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-__all__ = ["NOMENCLATURE", "Entry", "resistance_name"]
+__all__ = ["INVERSE", "NOMENCLATURE", "Entry", "resistance_name"]
 
 
 @dataclass(frozen=True, slots=True)
@@ -40,10 +40,25 @@ NOMENCLATURE = _table(
     ("I_given", "A", "current forced into the input"),
     ("V_CC", "V", "supply voltage"),
     ("V_ref", "V", "reference voltage"),
+    ("V_out", "V", "voltage of the output node"),
+    ("beta", "1", "current gain, collector current to base current"),
+    ("V_A", "V", "Early voltage"),
+    ("I_L", "A", "leakage of the collector or drain junction of one unit of area"),
+    ("J_in", "A", "input transistor's current without leakage"),
+    ("J_core", "A", "PTAT core's current without leakage"),
+    ("J_out", "A", "output transistor's current without leakage"),
+    ("V_D", "V", "collector-emitter or drain-source voltage of the diode-connected transistor"),
+    ("V_TH", "V", "threshold voltage"),
+    ("n", "1", "slope factor"),
+    ("n_S", "1", "weight of the source voltage: n in the common bulk, 1 in a well of its own"),
+    ("I_spec", "A", "specific current of the unit device, 2 n mu C_ox V_T^2 W/L"),
     ("TC1", "1/K", "first-order temperature coefficient of a resistance"),
     ("TC2", "1/K^2", "second-order temperature coefficient of a resistance"),
 )
 """Symbols that more than one place uses; a resistor slot names its own (`resistance_name`)."""
+
+INVERSE = {"beta": "inverse_beta", "V_A": "inverse_V_A"}
+"""Symbols that are infinite in the ideal transistor, and the names of their inverses in numerics."""
 
 
 def resistance_name(slot: str) -> str:

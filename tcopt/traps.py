@@ -9,8 +9,9 @@ import numpy as np
 
 from tcopt.assess import Assessment
 from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
+from tcopt.devices import diode_voltage
 from tcopt.drift import extreme_points
-from tcopt.laws.numbers import log_saturation_current, thermal_voltage
+from tcopt.laws.numbers import thermal_voltage
 from tcopt.operation import celsius
 
 if TYPE_CHECKING:
@@ -115,7 +116,7 @@ def _cold_headroom(found: Assessment) -> Iterator[str]:
         return
     cold = np.array([operation.study.range.low])
     I_in = operation.currents(cold)["I_in"]
-    V_BE = thermal_voltage(cold) * (np.log(I_in) - log_saturation_current(made.transistor, cold))
+    V_BE = diode_voltage(made, I_in, 1.0, cold)
     drop = float((made.supply - V_BE)[0])
     if drop < _SMALL_HEADROOM:
         yield (

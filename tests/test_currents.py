@@ -64,7 +64,8 @@ def stacked(rows: tuple[Solved, ...]) -> dict[str, Any]:
 
 
 def test_every_topology_and_input_is_compared() -> None:
-    assert set(CASES) == {(c.topology, feed) for c in CIRCUITS.values() for feed in c.feeds}
+    closed = [c for c in CIRCUITS.values() if c.devices != ("mos",)]
+    assert set(CASES) == {(c.topology, feed) for c in closed for feed in c.feeds}
 
 
 @every_case
@@ -112,7 +113,7 @@ def test_sensitivities(topology: str, feed: str) -> None:
     for row in solved(topology, feed)[::22]:
         solution = currents(circuit, row.floats)
         for of, exact in oracle.log_sensitivities(topology, feed, row.floats).items():
-            found = sensitivities(circuit, row.floats, solution, of)
+            found = sensitivities(circuit, row.floats, of)
             assert found.keys() == exact.keys()
             for name, value in exact.items():
                 error = abs(float(found[name]) - float(value)) / max(1.0, abs(float(value)))
@@ -124,9 +125,9 @@ def test_sensitivities_of_an_array(topology: str, feed: str) -> None:
     circuit = numerics(topology, feed)
     rows = solved(topology, feed)[:24]
     quantities = stacked(rows)
-    together = sensitivities(circuit, quantities, currents(circuit, quantities))
+    together = sensitivities(circuit, quantities)
     for k, row in enumerate(rows):
-        alone = sensitivities(circuit, row.floats, currents(circuit, row.floats))
+        alone = sensitivities(circuit, row.floats)
         for name, value in alone.items():
             assert together[name][k] == pytest.approx(float(value), rel=1e-9, abs=1e-12)
 
@@ -156,7 +157,7 @@ def test_needed_resistance_undoes_currents(topology: str, feed: str, slot: str) 
                 if needed <= 0:
                     continue
                 there = needed
-        influence = float(sensitivities(circuit, {**others, symbol: there}, solution)[symbol])
+        influence = float(sensitivities(circuit, {**others, symbol: there})[symbol])
         assert abs(needed / there - 1) * abs(influence) <= KEPT, row
         found = oracle.solve(topology, feed, {**others, symbol: needed})["I_out"]
         assert abs(found / output - 1) <= KEPT, row
@@ -192,7 +193,7 @@ def test_no_current_where_no_current_solves_the_loops(
     circuit = numerics(topology, feed)
     found = currents(circuit, quantities)
     assert not all(value > 0 for value in found.values())
-    assert all(np.isnan(value) for value in sensitivities(circuit, quantities, found).values())
+    assert all(np.isnan(value) for value in sensitivities(circuit, quantities).values())
 
 
 @pytest.mark.parametrize(
@@ -228,7 +229,7 @@ def test_where_nothing_solves_only_that_place_is_nan() -> None:
     circuit = numerics("ptat core", "self")
     quantities: dict[str, Any] = {**CORE, "N": np.array([0.5, 1.0, 8.0])}
     found = currents(circuit, quantities)
-    slopes = sensitivities(circuit, quantities, found)
+    slopes = sensitivities(circuit, quantities)
     assert found["I_out"][0] < 0
     assert found["I_out"][1] == 0
     np.testing.assert_array_equal(np.isnan(slopes["V_T"]), [True, True, False])

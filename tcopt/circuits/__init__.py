@@ -14,12 +14,15 @@ from tcopt.circuits.statement import GIVEN, SELF, SUPPLY, Circuit, Loop, Slot
 
 __all__ = ["CIRCUITS", "GIVEN", "SELF", "SUPPLY", "Circuit", "Loop", "Slot", "module_name"]
 
-_NOT_TOPOLOGIES = {"__init__", "statement", "terms", "generate", "closed_form"}
+_NOT_TOPOLOGIES = {
+    "__init__", "closed_form", "device_module", "emit", "generate", "ideal_module", "statement",
+    "terms",
+}  # fmt: skip
 
 
-def module_name(topology: str, feed: str) -> str:
-    """Return the name under which a topology's numerics are kept: 'ptat core' is ptat_core_self."""
-    return f"{topology.replace(' ', '_')}_{feed}"
+def module_name(topology: str, feed: str, device: str) -> str:
+    """Return the name under which a topology's numerics are kept: ptat_core_self_ideal."""
+    return f"{topology.replace(' ', '_')}_{feed}_{device}"
 
 
 def _collect() -> dict[str, Circuit]:

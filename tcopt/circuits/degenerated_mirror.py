@@ -13,14 +13,15 @@ __all__ = ["CIRCUIT"]
 
 
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
-    I_in, I_out = terms.symbol("I_in"), terms.symbol("I_out")
-    q1, q2 = terms.bipolar(I_in), terms.bipolar(I_out, area=terms.symbol("N"))
-    input_side = q1.base_emitter_voltage + q1.emitter_current * terms.resistance("input")
-    output_side = q2.base_emitter_voltage + q2.emitter_current * terms.resistance("output")
-    taken = I_in + q1.base_current + q2.base_current
+    N = terms.symbol("N")
+    I_in, I_out = terms.current("I_in", area=1), terms.current("I_out", area=N)
+    q2 = terms.transistor(I_out, N, terms.resistance("output"), to_output=True)
+    q1 = terms.input_diode(I_in, terms.resistance("input"), q2.base_current)
+    bases = q1.base_current + q2.base_current
+    voltage = q1.control_voltage + terms.above_base(bases)
     return (
-        input_loop(terms, feed, taken, input_side),
-        Loop("I_out", input_side - output_side),
+        input_loop(terms, feed, I_in + terms.supplied(bases), voltage),
+        Loop("I_out", q1.control_voltage - q2.control_voltage),
     )
 
 
@@ -37,4 +38,5 @@ CIRCUIT = Circuit(
     choices=("area_ratio",),
     feeds=(GIVEN, SUPPLY),
     is_mirror=True,
+    devices=("bipolar", "mos"),
 )

@@ -13,14 +13,16 @@ __all__ = ["CIRCUIT"]
 
 
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
-    I_in, I_out = terms.symbol("I_in"), terms.symbol("I_out")
-    q1, q2 = terms.bipolar(I_in), terms.bipolar(I_out, area=terms.symbol("N"))
-    drop = (I_in + q2.base_current) * terms.resistance("drop")
+    N = terms.symbol("N")
+    I_in, I_out = terms.current("I_in", area=1), terms.current("I_out", area=N)
+    q2 = terms.transistor(I_out, N, to_output=True)
+    q1 = terms.input_diode(I_in, other_bases=q2.base_current)
+    bases = q1.base_current + q2.base_current
+    drop = (I_in + terms.supplied(q2.base_current)) * terms.resistance("drop")
+    voltage = q1.control_voltage + terms.above_base(bases)
     return (
-        input_loop(
-            terms, feed, I_in + q1.base_current + q2.base_current, q1.base_emitter_voltage
-        ),
-        Loop("I_out", q1.base_emitter_voltage - drop - q2.base_emitter_voltage),
+        input_loop(terms, feed, I_in + terms.supplied(bases), voltage),
+        Loop("I_out", q1.control_voltage - drop - q2.control_voltage),
     )
 
 
@@ -36,4 +38,5 @@ CIRCUIT = Circuit(
     choices=("area_ratio",),
     feeds=(GIVEN, SUPPLY),
     is_mirror=True,
+    devices=("bipolar", "mos"),
 )

@@ -7,23 +7,22 @@ from typing import TYPE_CHECKING
 from tcopt.circuits.statement import Circuit, Loop, Slot
 
 if TYPE_CHECKING:
-    from tcopt.circuits.terms import Terms
+    from tcopt.circuits.terms import Terms, Transistor
 
-__all__ = ["CIRCUIT"]
+__all__ = ["CIRCUIT", "core"]
+
+
+def core(terms: Terms, current: str) -> tuple[Transistor, Loop]:
+    """Return the diode-connected transistor of a core, and the loop that fixes its current."""
+    N = terms.symbol("N")
+    I_core = terms.current(current, area=N)
+    q2 = terms.transistor(I_core, N, terms.resistance("core"), to_output=True)
+    q1 = terms.diode(terms.symbol("M") * I_core, other_bases=q2.base_current)
+    return q1, Loop(current, q1.control_voltage - q2.control_voltage)
 
 
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001
-    I_out = terms.symbol("I_out")
-    q1 = terms.bipolar(terms.symbol("M") * I_out)
-    q2 = terms.bipolar(I_out, area=terms.symbol("N"))
-    return (
-        Loop(
-            "I_out",
-            q1.base_emitter_voltage
-            - q2.base_emitter_voltage
-            - q2.emitter_current * terms.resistance("core"),
-        ),
-    )
+    return (core(terms, "I_out")[1],)
 
 
 CIRCUIT = Circuit(
@@ -34,4 +33,5 @@ CIRCUIT = Circuit(
     loops=_loops,
     choices=("area_ratio", "mirror_ratio"),
     rests_at_zero=True,
+    devices=("bipolar", "mos"),
 )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from tcopt.circuits import ptat_core
+from tcopt.circuits.ptat_core import core
 from tcopt.circuits.statement import Circuit, Loop, Slot
 
 if TYPE_CHECKING:
@@ -13,13 +13,12 @@ if TYPE_CHECKING:
 __all__ = ["CIRCUIT"]
 
 
-def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
-    I_core, I_out = terms.symbol("I_core"), terms.symbol("I_out")
-    (core,) = ptat_core.CIRCUIT.loops(terms, feed)
-    q1 = terms.bipolar(terms.symbol("M") * I_core)
+def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001
+    q1, loop = core(terms, "I_core")
+    falling = terms.current("I_out") - terms.current("I_core")
     return (
-        Loop("I_core", core.residual.subs(I_out, I_core)),
-        Loop("I_out", q1.base_emitter_voltage - (I_out - I_core) * terms.resistance("base")),
+        loop,
+        Loop("I_out", q1.over_emitter - falling * terms.resistance("base")),
     )
 
 
@@ -34,4 +33,5 @@ CIRCUIT = Circuit(
     loops=_loops,
     choices=("area_ratio", "mirror_ratio"),
     rests_at_zero=True,
+    devices=("bipolar", "mos"),
 )

@@ -14,7 +14,7 @@ __all__ = ["CIRCUIT"]
 
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001
     return (
-        Loop("I_out", terms.symbol("V_ref") - terms.symbol("I_out") * terms.resistance("sense")),
+        Loop("I_out", terms.symbol("V_ref") - terms.current("I_out") * terms.resistance("sense")),
     )
 
 
@@ -24,6 +24,6 @@ CIRCUIT = Circuit(
     unknowns=("I_out",),
     slots=(Slot("sense", "carries the output current"),),
     loops=_loops,
-    needs_transistor=False,
+    devices=(),
     needs_reference_voltage=True,
 )

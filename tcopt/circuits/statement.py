@@ -68,6 +68,7 @@ class Circuit:
     loops : builds the loops from the terms, for one of the feeds
     rests_at_zero : the loop also holds with no current, so it needs a start-up
     is_mirror : copies an input current, so a plain mirror is a fair comparison
+    devices : kinds of transistor that it takes: 'bipolar', 'mos', or none
     """
 
     topology: str
@@ -77,10 +78,15 @@ class Circuit:
     loops: Callable[[Terms, str], tuple[Loop, ...]]
     choices: tuple[str, ...] = ()
     feeds: tuple[str, ...] = (SELF,)
-    needs_transistor: bool = True
     needs_reference_voltage: bool = False
     rests_at_zero: bool = False
     is_mirror: bool = False
+    devices: tuple[str, ...] = ("bipolar",)
+
+    @property
+    def needs_transistor(self) -> bool:
+        """Whether a study has to name a transistor."""
+        return bool(self.devices)
 
     def slots_for(self, feed: str) -> tuple[Slot, ...]:
         """Return the slots that exist with this kind of input."""

@@ -1,20 +1,70 @@
-"""The sympy side of a circuit's statement: its symbols and its transistors."""
+"""The sympy side of a circuit's statement: its symbols and its transistors.
+
+The same loops are written for four kinds of transistor: ideal bipolar ones,
+from which formulas are read; bipolar ones with current gain, Early effect and
+leakage, their bases supplied by the input or through a follower; MOS ones.
+"""
 
 from __future__ import annotations
+
+from dataclasses import dataclass
+from enum import Enum
 
 import sympy as sp
 
 from tcopt.circuits.statement import Circuit, Loop
-from tcopt.laws.bipolar import Transistor
+from tcopt.laws.bipolar import base_emitter_voltage
+from tcopt.laws.mosfet import gate_voltage
 from tcopt.symbols import NOMENCLATURE, resistance_name
 
-__all__ = ["Terms", "statement_of"]
+__all__ = ["Device", "Terms", "Transistor", "kinds_of", "statement_of", "terms_of"]
+
+
+class Device(Enum):
+    """What the transistors of a loop are."""
+
+    IDEAL = "ideal"
+    BIPOLAR = "bipolar"
+    FOLLOWED = "bipolar_followed"
+    MOS = "mos"
+
+
+@dataclass(frozen=True)
+class Transistor:
+    """One transistor of a loop.
+
+    Attributes
+    ----------
+    base_current : [A]
+    emitter_current : what leaves at emitter or source [A]
+    control_voltage : of base or gate, to ground [V]
+    over_emitter : base-emitter or gate-source voltage [V]
+    """
+
+    base_current: sp.Expr
+    emitter_current: sp.Expr
+    control_voltage: sp.Expr
+    over_emitter: sp.Expr
 
 
 class Terms:
-    """Hands out the symbols in which loops are written; each is positive."""
+    """Hands out the symbols in which loops are written; each is positive.
+
+    Attributes
+    ----------
+    currents : terminal currents [A] by name, in the unknowns
+    unknowns : what the loops are solved for: a junction current for each named
+        current, and voltages of diode-connected transistors where they matter
+    extra : loops that the devices bring with them
+    """
 
     log = staticmethod(sp.log)
+
+    def __init__(self, device: Device = Device.IDEAL) -> None:
+        self.device = device
+        self.currents: dict[str, sp.Expr] = {}
+        self.unknowns: dict[str, sp.Symbol] = {}
+        self.extra: list[Loop] = []
 
     def symbol(self, name: str) -> sp.Symbol:
         """Return the symbol of a quantity of the nomenclature."""
@@ -24,16 +74,167 @@ class Terms:
         """Return the resistance of a slot [ohm]."""
         return sp.Symbol(resistance_name(slot), positive=True)
 
-    def bipolar(self, current: sp.Expr, area: sp.Expr | int = 1) -> Transistor:
-        """Return a bipolar transistor of this collector current [A] and area [1]."""
-        return Transistor(
-            current, sp.sympify(area), V_T=self.symbol("V_T"), I_S=self.symbol("I_S")
+    def current(self, name: str, area: sp.Expr | int = 0) -> sp.Expr:
+        """Return a current that the loops are solved for [A].
+
+        ``area``: of the transistor whose collector carries it, leakage of that
+        collector included; 0 for a sum of currents.
+        """
+        if name not in self.currents:
+            symbol = self.symbol(name)
+            leaks = area != 0 and self.device is not Device.IDEAL
+            if leaks:
+                symbol = self.symbol(name.replace("I_", "J_"))
+            self.unknowns[name] = symbol
+            self.currents[name] = symbol + area * self.symbol("I_L") if leaks else symbol
+        return self.currents[name]
+
+    def transistor(
+        self,
+        current: sp.Expr,
+        area: sp.Expr | int = 1,
+        emitter_resistor: sp.Expr | int = 0,
+        *,
+        to_output: bool = False,
+    ) -> Transistor:
+        """Return a transistor from what flows into its collector, leakage included [A].
+
+        ``to_output``: its collector is the output and sits at the voltage of the
+        load; else it does not carry the Early effect of a voltage (see `diode`).
+        """
+        area = sp.sympify(area)
+        leakage = 0 if self.device is Device.IDEAL else area * self.symbol("I_L")
+        junction = sp.expand(current - leakage)
+        emitter = junction + self._base(junction)
+        lifted = emitter * emitter_resistor
+        factor: sp.Expr = sp.Integer(1)
+        if to_output and self.device is not Device.IDEAL:
+            factor = 1 + (self.symbol("V_out") - lifted) / self.symbol("V_A")
+        return self._made(junction, area, lifted, emitter, factor)
+
+    def diode(
+        self,
+        total: sp.Expr,
+        emitter_resistor: sp.Expr | int = 0,
+        other_bases: sp.Expr | int = 0,
+    ) -> Transistor:
+        """Return a diode-connected transistor of unit area from all that its node takes [A].
+
+        The node also feeds its own base and those of the others, as they are or
+        through a follower: ``total = J + I_L + supplied(J/beta + other bases)``.
+        """
+        share = self._supplied_share()
+        leakage = 0 if self.device is Device.IDEAL else self.symbol("I_L")
+        junction = sp.expand(total - leakage - share * other_bases)
+        if share != 0:
+            junction = junction / (1 + share / self.symbol("beta"))
+        return self._diode_of(junction, emitter_resistor, other_bases)
+
+    def input_diode(
+        self,
+        current: sp.Expr,
+        emitter_resistor: sp.Expr | int = 0,
+        other_bases: sp.Expr | int = 0,
+    ) -> Transistor:
+        """Return a diode-connected transistor of unit area from its collector current [A]."""
+        leakage = 0 if self.device is Device.IDEAL else self.symbol("I_L")
+        return self._diode_of(sp.expand(current - leakage), emitter_resistor, other_bases)
+
+    def _diode_of(
+        self, junction: sp.Expr, emitter_resistor: sp.Expr | int, other_bases: sp.Expr | int
+    ) -> Transistor:
+        emitter = junction + self._base(junction)
+        lifted = emitter * emitter_resistor
+        one = sp.Integer(1)
+        if self.device is Device.IDEAL:
+            return self._made(junction, one, lifted, emitter, one)
+        V_D = self.symbol("V_D")
+        made = self._made(junction, one, lifted, emitter, 1 + V_D / self.symbol("V_A"))
+        across = made.over_emitter + self.above_base(made.base_current + other_bases)
+        if "V_D" not in self.unknowns:
+            self.unknowns["V_D"] = V_D
+            self.extra.append(Loop("V_D", V_D - across))
+        return made
+
+    def above_base(self, bases: sp.Expr) -> sp.Expr:
+        """Return how far the node that drives the bases lies above them [V]: a follower's V_BE."""
+        if self.device is not Device.FOLLOWED:
+            return sp.Integer(0)
+        beta = self.symbol("beta")
+        return base_emitter_voltage(
+            bases * beta / (1 + beta),
+            sp.Integer(1),
+            self.symbol("V_T"),
+            self.symbol("I_S"),
+            sp.Integer(1),
         )
 
+    def supplied(self, bases: sp.Expr) -> sp.Expr:
+        """Return what the input has to give for these base currents [A]."""
+        return self._supplied_share() * bases
 
-def statement_of(circuit: Circuit, feed: str) -> tuple[Loop, ...]:
-    """Return the circuit's loops in sympy, in the order in which they fix the unknowns."""
-    loops = circuit.loops(Terms(), feed)
+    def _supplied_share(self) -> sp.Expr:
+        if self.device is Device.BIPOLAR:
+            return sp.Integer(1)
+        if self.device is Device.FOLLOWED:
+            return 1 / (1 + self.symbol("beta"))
+        return sp.Integer(0)
+
+    def _base(self, junction: sp.Expr) -> sp.Expr:
+        gain = self.device in {Device.BIPOLAR, Device.FOLLOWED}
+        return junction / self.symbol("beta") if gain else sp.Integer(0)
+
+    def _made(
+        self,
+        junction: sp.Expr,
+        area: sp.Expr,
+        lifted: sp.Expr,
+        emitter: sp.Expr,
+        early_factor: sp.Expr,
+    ) -> Transistor:
+        if self.device is Device.MOS:
+            control = gate_voltage(
+                junction,
+                area,
+                lifted,
+                self.symbol("V_T"),
+                self.symbol("V_TH"),
+                self.symbol("n"),
+                self.symbol("n_S"),
+                self.symbol("I_spec"),
+                early_factor,
+            )
+            return Transistor(sp.Integer(0), emitter, control, control - lifted)
+        over = base_emitter_voltage(
+            junction, area, self.symbol("V_T"), self.symbol("I_S"), early_factor
+        )
+        return Transistor(self._base(junction), emitter, over + lifted, over)
+
+
+def kinds_of(circuit: Circuit) -> tuple[Device, ...]:
+    """Return the kinds of transistor for which the circuit is stated."""
+    found: list[Device] = []
+    if "bipolar" in circuit.devices:
+        found += [Device.IDEAL, Device.BIPOLAR, Device.FOLLOWED]
+    if "mos" in circuit.devices:
+        found.append(Device.MOS)
+    return tuple(found) or (Device.IDEAL,)
+
+
+def terms_of(
+    circuit: Circuit, feed: str, device: Device = Device.IDEAL
+) -> tuple[Terms, tuple[Loop, ...]]:
+    """Return the circuit's loops for a kind of transistor, and the terms they are written in."""
+    terms = Terms(device)
+    loops = circuit.loops(terms, feed)
     if tuple(loop.unknown for loop in loops) != circuit.unknowns:
         raise AssertionError(f"{circuit.topology}: a loop each for {circuit.unknowns}, in order")
-    return loops
+    return terms, (*loops, *terms.extra)
+
+
+def statement_of(circuit: Circuit, feed: str, device: Device | None = None) -> tuple[Loop, ...]:
+    """Return the circuit's loops in sympy, in the order in which they fix the unknowns.
+
+    Without a device, for the first kind for which the circuit is stated.
+    """
+    return terms_of(circuit, feed, device or kinds_of(circuit)[0])[1]

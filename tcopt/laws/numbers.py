@@ -49,6 +49,10 @@ class JunctionData(Protocol):
     def temperature_exponent(self) -> float: ...  # noqa: D102
     @property
     def bandgap_voltage(self) -> float: ...  # noqa: D102
+    @property
+    def varshni_coefficient(self) -> float: ...  # noqa: D102
+    @property
+    def varshni_temperature(self) -> float: ...  # noqa: D102
 
 
 def thermal_voltage(temperature: ArrayLike) -> Array:
@@ -63,9 +67,7 @@ def thermal_voltage(temperature: ArrayLike) -> Array:
 def resistance_ratio(material: ResistorData, temperature: ArrayLike) -> Array:
     """Return ``R(T)/R_0`` [1] at temperatures [K]; R_0 at the material's own reference."""
     T = np.asarray(temperature, dtype=float)
-    return np.asarray(
-        generated.resistance_ratio(T, material.reference, material.tc1, material.tc2)
-    )
+    return np.asarray(generated.resistance_ratio(T, material.reference, material.tc1, material.tc2))
 
 
 def resistance_ratio_slope(material: ResistorData, temperature: ArrayLike) -> Array:
@@ -97,16 +99,18 @@ def log_saturation_current(transistor: JunctionData, temperature: ArrayLike) -> 
 def log_saturation_slope(transistor: JunctionData, temperature: ArrayLike) -> Array:
     """Return ``d(ln I_S)/dT`` [1/K] at temperatures [K]."""
     return np.asarray(
-        generated.log_saturation_slope(
-            np.asarray(temperature, dtype=float), *_junction(transistor)
-        )
+        generated.log_saturation_slope(np.asarray(temperature, dtype=float), *_junction(transistor))
     )
 
 
-def _junction(transistor: JunctionData) -> tuple[float, float, float, float]:
+def _junction(
+    transistor: JunctionData,
+) -> tuple[float, float, float, float, float, float]:
     return (
         transistor.reference,
         transistor.temperature_exponent,
         transistor.bandgap_voltage,
+        transistor.varshni_coefficient,
+        transistor.varshni_temperature,
         VOLT_PER_KELVIN,
     )

@@ -1,4 +1,4 @@
-"""The one root that scipy has no fast function for: the upper root of ``y - ln y = u``."""
+"""Two functions that scipy has not, or not fast: a root of ``y - ln y = u``, and a logarithm."""
 
 from __future__ import annotations
 
@@ -6,7 +6,7 @@ from typing import Any
 
 import numpy as np
 
-__all__ = ["upper_root"]
+__all__ = ["log_expm1", "upper_root"]
 
 _STEPS = 6
 
@@ -34,3 +34,12 @@ def upper_root(u: Any) -> Any:
             step = (y - np.log(y) - u) * y / (y - 1)
             y = np.where(u > 1, y - np.where(np.isnan(step), 0, step), y)
     return y
+
+
+def log_expm1(s: Any) -> Any:
+    """Return ``ln(exp(s) - 1)`` without overflow and without loss for small s.
+
+    >>> float(log_expm1(1000.0)), round(float(log_expm1(1e-3)), 9)
+    (1000.0, -6.907255237)
+    """
+    return s + np.log(-np.expm1(-s))

@@ -13,8 +13,8 @@ from tcopt.arrays import Array
 from tcopt.assess import Assessment, assess, require_supply
 from tcopt.circuits import CIRCUITS
 from tcopt.design import Bound, DesignResult, NeededPoint, PlainMirror
+from tcopt.devices import diode_voltage
 from tcopt.errors import InputError, NoSolutionError
-from tcopt.laws.numbers import log_saturation_current, thermal_voltage
 from tcopt.mix.band import Band
 from tcopt.mix.joint import search_two_slots
 from tcopt.mix.program import Fit
@@ -167,7 +167,7 @@ def _plain_mirror(found: Assessment) -> PlainMirror | None:
     current = found.target.current(T) / operation.choices.area_ratio
     feed = None
     if made.supply is not None:
-        V_BE = thermal_voltage(T) * (np.log(current) - log_saturation_current(made.transistor, T))
+        V_BE = diode_voltage(made, current, 1.0, T)
         feed = float(((made.supply - V_BE) / current)[0])
     return PlainMirror(float(current[0]), feed)
 

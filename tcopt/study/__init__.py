@@ -4,7 +4,7 @@ from tcopt.study.choices import Choice, Span
 from tcopt.study.circuit import CircuitChoices
 from tcopt.study.deviations import CommonPart
 from tcopt.study.load import load_process, load_study
-from tcopt.study.process import BaseEmitter, Material, Process, Transistor
+from tcopt.study.process import Material, Process
 from tcopt.study.question import (
     GRADES,
     FixedSlot,
@@ -18,11 +18,12 @@ from tcopt.study.question import (
 from tcopt.study.spread import OUTPUT_MIRROR, Insertion, Spread, Trim
 from tcopt.study.start import write_first_study
 from tcopt.study.study import Study
+from tcopt.study.transistors import BaseEmitter, MosTransistor, Transistor
 from tcopt.study.write import study_text
 
 __all__ = [
     "GRADES", "OUTPUT_MIRROR", "BaseEmitter", "Choice", "CircuitChoices", "CommonPart",
-    "FixedSlot", "Insertion", "Limit", "Material", "OpenSlot", "Part", "Process", "Search",
+    "FixedSlot", "Insertion", "Limit", "Material", "MosTransistor", "OpenSlot", "Part", "Process", "Search",
     "Span", "Spread", "Study", "Target", "TemperatureRange", "Transistor", "Trim", "load_process",
     "load_study", "study_text", "write_first_study",
 ]  # fmt: skip

@@ -10,7 +10,8 @@ from pydantic import BeforeValidator, PlainValidator, ValidationInfo
 
 from tcopt.study.fields import Check, quantity, refusal
 from tcopt.study.gate import quoted
-from tcopt.study.process import Material, Process, Transistor
+from tcopt.study.process import Material, Process
+from tcopt.study.transistors import AnyTransistor
 from tcopt.units import shown
 
 __all__ = [
@@ -108,4 +109,4 @@ def _looked_up(kind: str) -> BeforeValidator:
 
 
 MaterialName = Annotated[Material, _looked_up("materials")]
-TransistorName = Annotated[Transistor, _looked_up("transistors")]
+TransistorName = Annotated[AnyTransistor, _looked_up("transistors")]

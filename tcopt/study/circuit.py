@@ -3,16 +3,28 @@
 from __future__ import annotations
 
 from itertools import product
-from typing import Annotated
+from typing import Annotated, Any, Literal
 
-from pydantic import Field, model_validator
+from pydantic import BeforeValidator, Field, field_validator, model_validator
 
 from tcopt.circuits import CIRCUITS, GIVEN, SELF, SUPPLY, Circuit
 from tcopt.study.choices import CurrentChoice, RatioChoice, Ratios, TransistorName
-from tcopt.study.fields import Curvature, Slope, Voltage, refusal, words
+from tcopt.study.fields import Curvature, Slope, Voltage, refusal, without_repeats, words
 from tcopt.study.gate import Model
+from tcopt.study.transistors import MosTransistor
 
 __all__ = ["CircuitChoices"]
+
+_DATA_OF_EFFECTS = {
+    "current gain": "current_gain",
+    "early effect": "early_voltage",
+    "leakage": "leakage_current",
+}
+Effect = Annotated[Literal["current gain", "early effect", "leakage"], words(*_DATA_OF_EFFECTS)]
+
+
+def _listed(value: Any) -> Any:
+    return [value] if isinstance(value, str) else value
 
 
 class CircuitChoices(Model):
@@ -28,6 +40,11 @@ class CircuitChoices(Model):
     supply : [V], where the input comes through a feed resistor
     area_ratio, mirror_ratio : one value, or those that may be chosen [1]
     reference_voltage, reference_tc1, reference_tc2 : likewise, where a reference is held [V]
+    effects : which of the transistor's data count: 'current gain', 'early effect',
+        'leakage'; none: ideal transistors
+    base_current : taken 'from input', or supplied 'through follower'
+    output_voltage : of the node that takes the output current [V]
+    well : of MOS transistors whose source is lifted: 'common' bulk, or their 'own' well
     """
 
     topology: Annotated[str, words(*CIRCUITS)]
@@ -42,6 +59,21 @@ class CircuitChoices(Model):
     reference_voltage: Voltage | None = None
     reference_tc1: Slope = 0.0
     reference_tc2: Curvature = 0.0
+    effects: Annotated[tuple[Effect, ...], BeforeValidator(_listed)] = ()
+    base_current: Annotated[
+        Literal["from input", "through follower"], words("from input", "through follower")
+    ] = "from input"
+    output_voltage: Voltage | None = None
+    well: Annotated[Literal["common", "own"], words("common", "own")] = "common"
+
+    @property
+    def device(self) -> str:
+        """The kind of transistor in the loops, as `tcopt.solve.numerics` names it."""
+        if isinstance(self.transistor, MosTransistor):
+            return "mos"
+        if not self.effects:
+            return "ideal"
+        return "bipolar_followed" if self.base_current == "through follower" else "bipolar"
 
     @property
     def circuit(self) -> Circuit:
@@ -60,6 +92,11 @@ class CircuitChoices(Model):
             key for key in keys if key in self.model_fields_set and getattr(self, key) is not None
         ]
 
+    @field_validator("effects")
+    @classmethod
+    def _each_once(cls, value: tuple[str, ...]) -> tuple[str, ...]:
+        return without_repeats(value)
+
     @model_validator(mode="after")
     def _fits_the_topology(self) -> CircuitChoices:
         circuit = self.circuit
@@ -69,7 +106,10 @@ class CircuitChoices(Model):
         foreign = self._gives(*({"area_ratio", "mirror_ratio"} - set(circuit.choices)))
         foreign += self._gives(*inputs, *coefficients) if SELF in circuit.feeds else []
         foreign += [] if circuit.needs_reference_voltage else self._gives(*reference)
-        foreign += [] if circuit.needs_transistor else self._gives("transistor")
+        if not circuit.needs_transistor:
+            foreign += self._gives(
+                "transistor", "effects", "base_current", "output_voltage", "well"
+            )
         if foreign:
             raise refusal(
                 f"a key that {circuit.topology!r} does not have",
@@ -78,6 +118,7 @@ class CircuitChoices(Model):
             )
         if circuit.needs_transistor and self.transistor is None:
             raise refusal("nothing", "the name of a transistor of the process", "transistor")
+        self._a_transistor_that_fits()
         if circuit.needs_reference_voltage and self.reference_voltage is None:
             raise refusal("nothing", "a voltage such as '1.2 V'", "reference_voltage")
         if SELF not in circuit.feeds:
@@ -86,9 +127,44 @@ class CircuitChoices(Model):
             self._some_voltage_across_the_core()
         return self
 
+    def _a_transistor_that_fits(self) -> None:
+        transistor = self.transistor
+        if transistor is None:
+            return
+        if transistor.kind not in self.circuit.devices:
+            kinds = " or ".join(self.circuit.devices)
+            raise refusal(
+                f"{transistor.name}, a {transistor.kind} transistor",
+                f"a {kinds} transistor for {self.topology!r}",
+                "transistor",
+            )
+        mos = isinstance(transistor, MosTransistor)
+        for effect, data in _DATA_OF_EFFECTS.items():
+            if effect in self.effects and getattr(transistor, data, None) is None:
+                raise refusal(
+                    f"{effect!r} without {data} in {transistor.name}",
+                    "effects for which the transistor has data",
+                    "effects",
+                )
+        if "early effect" in self.effects and self.output_voltage is None:
+            raise refusal(
+                "nothing", "the voltage of the output node, for the early effect", "output_voltage"
+            )
+        follower = self.base_current == "through follower"
+        if follower and (mos or "current gain" not in self.effects):
+            raise refusal(
+                "'through follower' without base currents",
+                "it with a bipolar transistor and the effect 'current gain'",
+                "base_current",
+            )
+        if not mos and self.well != "common":
+            raise refusal("'own' for a bipolar transistor", "it with MOS transistors alone", "well")
+
     def _takes(self) -> list[str]:
         circuit = self.circuit
-        takes = ["topology", *(["transistor"] if circuit.needs_transistor else [])]
+        takes = ["topology"]
+        if circuit.needs_transistor:
+            takes += ["transistor", "effects", "base_current", "output_voltage", "well"]
         if SELF not in circuit.feeds:
             takes += ["input_current or current_ratio or supply", "input_tc1", "input_tc2"]
         takes += circuit.choices

@@ -15,6 +15,7 @@ from tcopt.study.curve import read_curve
 from tcopt.study.gate import INTERNAL, refused_input
 from tcopt.study.process import Process
 from tcopt.study.question import SLOT_TAGS
+from tcopt.study.transistors import TRANSISTOR_TAGS
 from tcopt.study.study import Study
 from tcopt.units import shown
 
@@ -60,7 +61,7 @@ def load_process(path: str | Path) -> Process:
     try:
         return Process.model_validate(data, by_alias=True, by_name=False, context=FromFile())
     except ValidationError as error:
-        raise refused_input(str(path), error) from None
+        raise refused_input(str(path), error, TRANSISTOR_TAGS) from None
 
 
 def load_study(path: str | Path) -> Study:
@@ -87,4 +88,4 @@ def load_study(path: str | Path) -> Study:
     try:
         return Study.model_validate(data, by_alias=True, by_name=False, context=FromFile(process))
     except ValidationError as error:
-        raise refused_input(str(path), error, SLOT_TAGS) from None
+        raise refused_input(str(path), error, SLOT_TAGS | TRANSISTOR_TAGS) from None

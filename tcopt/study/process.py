@@ -27,15 +27,11 @@ from tcopt.study.fields import (
     refusal,
 )
 from tcopt.study.gate import INTERNAL, Model, quoted
-from tcopt.units import parse, shown
+from tcopt.study.transistors import AnyTransistor
+from tcopt.units import shown
 
-__all__ = ["BaseEmitter", "Length", "Material", "Process", "Transistor"]
+__all__ = ["Length", "Material", "Process"]
 
-_COARSEST_MATCHING = 1e-4
-_PAIR_MATCHING_WORDS = (
-    "a matching coefficient of V_BE such as '0.5 mV um', or of the saturation current such as "
-    "'2 % um', or a bare number in m, at least 0 and below 1e-4 m"
-)
 Length = Annotated[float, quantity("m", above=0, below=1)]
 _Matching = Annotated[
     float,
@@ -44,11 +40,6 @@ _Matching = Annotated[
 _SheetSpread = Annotated[float, deviation("1", "5 %", below=0.2)]
 _FirstOrderSpread = Annotated[float, deviation("1/K", "100 ppm/K", below=0.01)]
 _SecondOrderSpread = Annotated[float, deviation("1/K^2", "0.1 ppm/K^2", below=1e-4)]
-_SaturationSpread = Annotated[float, deviation("1", "20 %", below=1)]
-_VoltageSpread = Annotated[float, deviation("V", "3 mV", below=0.1)]
-_GainSpread = Annotated[float, deviation("1", "20 %", below=1)]
-_Positive = Annotated[float, quantity("1", "a pure number", above=0)]
-_Exponent = Annotated[float, quantity("1", "a pure number", at_least=-10, below=10)]
 
 
 class Material(Model):
@@ -101,109 +92,6 @@ class Material(Model):
         return value
 
 
-class BaseEmitter(Model):
-    """One measured point of a junction of unit emitter area, at the transistor's reference."""
-
-    voltage: Voltage
-    current: Current
-
-
-class Transistor(Model):
-    """A bipolar transistor of unit emitter area.
-
-    Attributes
-    ----------
-    name : as the process calls it
-    reference : temperature of saturation current and current gain [K]
-    base_emitter : the measured point from which the saturation current was made, if it was
-    saturation_current : at the reference [A]
-    bandgap_voltage : extrapolated to 0 K [V]
-    temperature_exponent : of the saturation current [1]
-    current_gain, current_gain_exponent : at the reference, and its power of temperature [1]
-    early_voltage : [V]
-    saturation_current_spread : one standard deviation of the saturation current's
-        logarithm, lot to lot [1]
-    base_emitter_spread : instead of it, one standard deviation of V_BE at the reference
-        and a given current [V]
-    gain_spread : one standard deviation of the logarithm of the current gain [1]
-    common : steps of the factory that other entries share, with their shares of the
-        variance of saturation current and gain
-    matching : of a pair, Pelgrom's coefficient of ``ln I_S``: sigma times the root of the
-        emitter area of either [m]; from a file also of V_BE, as '1 mV um'
-    emitter_area : of the unit transistor, as drawn [m^2]
-    """
-
-    name: Name = Field(validation_alias=f"{INTERNAL}name")
-    reference: Temperature
-    base_emitter: BaseEmitter | None = None
-    saturation_current: SaturationCurrent = Field(default=None, validate_default=True)
-    bandgap_voltage: Voltage
-    temperature_exponent: _Exponent
-    current_gain: _Positive | None = None
-    current_gain_exponent: _Exponent = 0.0
-    early_voltage: Voltage | None = None
-    saturation_current_spread: _SaturationSpread | None = None
-    base_emitter_spread: _VoltageSpread | None = None
-    gain_spread: _GainSpread | None = None
-    common: CommonParts = ()
-    matching: Annotated[float, Field(ge=0)] | None = None
-    emitter_area: Area | None = None
-
-    @property
-    def log_saturation_spread(self) -> float | None:
-        """One standard deviation of ``ln I_S`` [1], from whichever spread is given.
-
-        At a given current ``dV_BE = -V_T d(ln I_S)``, V_T at the reference.
-        """
-        if self.base_emitter_spread is None:
-            return self.saturation_current_spread
-        return float(self.base_emitter_spread * elementary_charge / (Boltzmann * self.reference))
-
-    @field_validator("saturation_current", mode="before")
-    @classmethod
-    def _given_or_computed(cls, value: Any, info: ValidationInfo) -> Any:
-        either = "either saturation_current or base_emitter = { voltage = , current = }"
-        if not {"base_emitter", "reference"} <= info.data.keys():
-            return 1.0  # One of them was refused already; that is the message to give.
-        point: BaseEmitter | None = info.data["base_emitter"]
-        if value is not None and point is not None:
-            raise refusal("both", either)
-        if point is None:
-            if value is None:
-                raise refusal("nothing", either)
-            return value
-        thermal_voltage = Boltzmann * info.data["reference"] / elementary_charge
-        return point.current * math.exp(-point.voltage / thermal_voltage)
-
-
-    @field_validator("matching", mode="before")
-    @classmethod
-    def _of_current_or_voltage(cls, value: Any, info: ValidationInfo) -> Any:
-        if value is None or "reference" not in info.data:
-            return None
-        found = None
-        for unit, per_metre in (
-            ("m", 1.0),
-            ("V m", elementary_charge / (Boltzmann * info.data["reference"])),
-        ):
-            with suppress(ValueError):
-                found = parse(value, unit) * per_metre
-                break
-        if found is None or not 0 <= found < _COARSEST_MATCHING:
-            raise refusal(shown(value), _PAIR_MATCHING_WORDS)
-        return found
-
-    @model_validator(mode="after")
-    def _one_spread(self) -> Transistor:
-        if self.saturation_current_spread is not None and self.base_emitter_spread is not None:
-            raise refusal(
-                "both",
-                "either saturation_current_spread or base_emitter_spread",
-                "base_emitter_spread",
-            )
-        return self
-
-
 def _named(value: Any, info: ValidationInfo, example: str) -> Any:
     """Give each entry of a file its name and, where it has none, the process's reference."""
     if info.context is None:
@@ -235,7 +123,7 @@ class Process(Model):
     materials: dict[str, Material] = Field(
         description="at least one table such as [materials.p_poly]"
     )
-    transistors: dict[str, Transistor] = Field(default_factory=dict)
+    transistors: dict[str, AnyTransistor] = Field(default_factory=dict)
     path: Path | None = Field(default=None, validation_alias=f"{INTERNAL}path")
 
     @field_validator("materials", mode="before")

@@ -69,6 +69,13 @@ def _circuit(study: Study) -> dict[str, Any]:
         value: float | None = getattr(given, key)
         if value:
             table[key] = exact(value, unit)
+    if given.effects:
+        table["effects"] = list(given.effects)
+    if given.output_voltage is not None:
+        table["output_voltage"] = exact(given.output_voltage, "V")
+    for key, usual in (("base_current", "from input"), ("well", "common")):
+        if getattr(given, key) != usual:
+            table[key] = getattr(given, key)
     for key in given.circuit.choices:
         table[key] = _choice(getattr(given, key), "1")
     return table

@@ -32,7 +32,7 @@ def slope(
 ) -> Any:
     """Return (dI_out/dT)/I_out [1/K], given d ln q/dT of the quantities that move."""
     circuit = numerics(topology, feed)
-    by_quantity = sensitivities(circuit, quantities, currents(circuit, quantities))
+    by_quantity = sensitivities(circuit, quantities)
     return sum(by_quantity[name] * value for name, value in log_slopes.items())
 
 

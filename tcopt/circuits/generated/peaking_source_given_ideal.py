@@ -1,4 +1,4 @@
-"""peaking source, input: given.
+"""peaking source, ideal transistors, input: given.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -7,7 +7,8 @@ from typing import Any
 
 from numpy import exp, log
 
-UNKNOWNS = ('I_in', 'I_out')
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_I_in', 'log_I_out')
 QUANTITIES = ('I_given', 'N', 'R_drop', 'V_T')
 
 
@@ -22,16 +23,17 @@ def closed_form(I_given: Any, N: Any, R_drop: Any, V_T: Any) -> Any:
 
 
 def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
+    """Return the loops, their partials by unknown, and by quantity."""
     x0 = exp(log_I_in)
-    x1 = V_T*log_I_out
-    x2 = R_drop*x0
-    x3 = log(N)
-    x4 = -V_T
+    x1 = -x0
+    x2 = V_T*log_I_out
+    x3 = R_drop*x0
+    x4 = log(N)
+    x5 = -V_T
     return (
-        (-I_given + x0, V_T*log_I_in + V_T*x3 - x1 - x2),
-        ((x0, 0), (-x2 - x4, x4)),
-        ((-I_given, 0, 0, 0), (0, V_T, -x2, V_T*log_I_in + V_T*x3 - x1)),
+        (-I_given - x1, V_T*log_I_in + V_T*x4 - x2 - x3),
+        ((x0, 0), (-x3 - x5, x5)),
+        ((-I_given, 0, 0, 0), (0, V_T, x1, V_T*log_I_in + V_T*x4 - x2)),
     )
 
 

@@ -1,4 +1,4 @@
-"""peaking source, input: supply.
+"""peaking source, ideal transistors, input: supply.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -6,12 +6,12 @@ Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; no
 from typing import Any
 
 from numpy import exp, log
-
 from scipy.special import wrightomega
 
 from tcopt.laws.roots import upper_root
 
-UNKNOWNS = ('I_in', 'I_out')
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_I_in', 'log_I_out')
 QUANTITIES = ('N', 'R_drop', 'R_feed', 'V_CC', 'V_T', 'log_I_S')
 
 
@@ -28,7 +28,7 @@ def closed_form(N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, log_I_S: 
 
 
 def partials(log_I_in: Any, log_I_out: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
+    """Return the loops, their partials by unknown, and by quantity."""
     x0 = V_T*log_I_in
     x1 = exp(log_I_in)
     x2 = R_feed*x1
@@ -37,10 +37,11 @@ def partials(log_I_in: Any, log_I_out: Any, N: Any, R_drop: Any, R_feed: Any, V_
     x5 = -x0
     x6 = log(N)
     x7 = -V_T
+    x8 = -x1
     return (
         (V_CC + V_T*log_I_S - x0 - x2, V_T*x6 - x3 - x4 - x5),
         ((-V_T - x2, 0), (-x4 - x7, x7)),
-        ((0, 0, -x2, V_CC, V_T*log_I_S + x5, V_T), (V_T, -x4, 0, 0, V_T*x6 + x0 - x3, 0)),
+        ((0, 0, x8, V_CC, V_T*log_I_S + x5, V_T), (V_T, x8, 0, 0, V_T*x6 + x0 - x3, 0)),
     )
 
 

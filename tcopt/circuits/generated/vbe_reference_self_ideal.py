@@ -1,4 +1,4 @@
-"""vbe reference, input: self.
+"""vbe reference, ideal transistors, input: self.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -9,7 +9,8 @@ from numpy import exp, log
 
 from tcopt.laws.roots import upper_root
 
-UNKNOWNS = ('I_out',)
+CURRENTS = ('I_out',)
+UNKNOWNS = ('log_I_out',)
 QUANTITIES = ('R_base', 'V_T', 'log_I_S')
 
 
@@ -23,14 +24,15 @@ def closed_form(R_base: Any, V_T: Any, log_I_S: Any) -> Any:
 
 
 def partials(log_I_out: Any, R_base: Any, V_T: Any, log_I_S: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
-    x0 = R_base*exp(log_I_out)
-    x1 = V_T*log_I_S - V_T*log_I_out
-    x2 = -V_T
+    """Return the loops, their partials by unknown, and by quantity."""
+    x0 = exp(log_I_out)
+    x1 = R_base*x0
+    x2 = V_T*log_I_S - V_T*log_I_out
+    x3 = -V_T
     return (
-        (-x0 - x1,),
-        ((-x0 - x2,),),
-        ((-x0, -x1, x2),),
+        (-x1 - x2,),
+        ((-x1 - x3,),),
+        ((-x0, -x2, x3),),
     )
 
 

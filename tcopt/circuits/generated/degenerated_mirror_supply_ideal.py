@@ -1,4 +1,4 @@
-"""degenerated mirror, input: supply.
+"""degenerated mirror, ideal transistors, input: supply.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -6,10 +6,10 @@ Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; no
 from typing import Any
 
 from numpy import exp, log
-
 from scipy.special import wrightomega
 
-UNKNOWNS = ('I_in', 'I_out')
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_I_in', 'log_I_out')
 QUANTITIES = ('N', 'R_feed', 'R_input', 'R_output', 'V_CC', 'V_T', 'log_I_S')
 
 
@@ -27,19 +27,20 @@ def closed_form(N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T
 
 
 def partials(log_I_in: Any, log_I_out: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, log_I_S: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
+    """Return the loops, their partials by unknown, and by quantity."""
     x0 = V_T*log_I_in
     x1 = exp(log_I_in)
     x2 = R_feed*x1
     x3 = R_input*x1
-    x4 = R_output*exp(log_I_out)
-    x5 = -x4
+    x4 = exp(log_I_out)
+    x5 = R_output*x4
     x6 = -V_T*log_I_out + V_T*log(N) + x0
     x7 = V_T + x3
+    x8 = -x1
     return (
-        (V_CC + V_T*log_I_S - x0 - x2 - x3, x3 + x5 + x6),
-        ((-x2 - x7, 0), (x7, -V_T - x4)),
-        ((0, -x2, -x3, 0, V_CC, V_T*log_I_S - x0, V_T), (V_T, 0, x3, x5, 0, x6, 0)),
+        (V_CC + V_T*log_I_S - x0 - x2 - x3, x3 - x5 + x6),
+        ((-x2 - x7, 0), (x7, -V_T - x5)),
+        ((0, x8, x8, 0, V_CC, V_T*log_I_S - x0, V_T), (V_T, 0, x1, -x4, 0, x6, 0)),
     )
 
 

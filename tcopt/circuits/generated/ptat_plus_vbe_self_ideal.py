@@ -1,4 +1,4 @@
-"""ptat plus vbe, input: self.
+"""ptat plus vbe, ideal transistors, input: self.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -6,10 +6,10 @@ Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; no
 from typing import Any
 
 from numpy import exp, log
-
 from scipy.special import wrightomega
 
-UNKNOWNS = ('I_core', 'I_out')
+CURRENTS = ('I_core', 'I_out')
+UNKNOWNS = ('log_I_core', 'log_I_out')
 QUANTITIES = ('M', 'N', 'R_base', 'R_core', 'V_T', 'log_I_S')
 
 
@@ -22,19 +22,19 @@ def closed_form(M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, log_I_S: Any
 
 
 def partials(log_I_core: Any, log_I_out: Any, M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, log_I_S: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
+    """Return the loops, their partials by unknown, and by quantity."""
     x0 = exp(log_I_core)
     x1 = -R_core*x0
     x2 = V_T*log(M)
     x3 = V_T*log(N) + x2
     x4 = R_base*x0
-    x5 = -R_base*exp(log_I_out)
-    x6 = x4 + x5
+    x5 = exp(log_I_out)
+    x6 = -R_base*x5
     x7 = -V_T*log_I_S + V_T*log_I_core + x2
     return (
-        (x1 + x3, x6 + x7),
-        ((x1, 0), (V_T + x4, x5)),
-        ((V_T, V_T, 0, x1, x3, 0), (V_T, 0, x6, 0, x7, -V_T)),
+        (x1 + x3, x4 + x6 + x7),
+        ((x1, 0), (V_T + x4, x6)),
+        ((V_T, V_T, 0, -x0, x3, 0), (V_T, 0, x0 - x5, 0, x7, -V_T)),
     )
 
 

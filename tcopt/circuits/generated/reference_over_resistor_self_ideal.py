@@ -1,4 +1,4 @@
-"""reference over resistor, input: self.
+"""reference over resistor, ideal transistors, input: self.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -7,7 +7,8 @@ from typing import Any
 
 from numpy import exp, log
 
-UNKNOWNS = ('I_out',)
+CURRENTS = ('I_out',)
+UNKNOWNS = ('log_I_out',)
 QUANTITIES = ('R_sense', 'V_ref')
 
 
@@ -18,13 +19,13 @@ def closed_form(R_sense: Any, V_ref: Any) -> Any:
 
 
 def partials(log_I_out: Any, R_sense: Any, V_ref: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
-    x0 = R_sense*exp(log_I_out)
-    x1 = -x0
+    """Return the loops, their partials by unknown, and by quantity."""
+    x0 = exp(log_I_out)
+    x1 = R_sense*x0
     return (
-        (V_ref - x0,),
-        ((x1,),),
-        ((x1, V_ref),),
+        (V_ref - x1,),
+        ((-x1,),),
+        ((-x0, V_ref),),
     )
 
 

@@ -1,4 +1,4 @@
-"""degenerated mirror, input: given.
+"""degenerated mirror, ideal transistors, input: given.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -6,10 +6,10 @@ Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; no
 from typing import Any
 
 from numpy import exp, log
-
 from scipy.special import wrightomega
 
-UNKNOWNS = ('I_in', 'I_out')
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_I_in', 'log_I_out')
 QUANTITIES = ('I_given', 'N', 'R_input', 'R_output', 'V_T')
 
 
@@ -25,16 +25,16 @@ def closed_form(I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any) -> 
 
 
 def partials(log_I_in: Any, log_I_out: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
+    """Return the loops, their partials by unknown, and by quantity."""
     x0 = exp(log_I_in)
     x1 = R_input*x0
-    x2 = R_output*exp(log_I_out)
-    x3 = -x2
+    x2 = exp(log_I_out)
+    x3 = R_output*x2
     x4 = V_T*log_I_in - V_T*log_I_out + V_T*log(N)
     return (
-        (-I_given + x0, x1 + x3 + x4),
-        ((x0, 0), (V_T + x1, -V_T - x2)),
-        ((-I_given, 0, 0, 0, 0), (0, V_T, x1, x3, x4)),
+        (-I_given + x0, x1 - x3 + x4),
+        ((x0, 0), (V_T + x1, -V_T - x3)),
+        ((-I_given, 0, 0, 0, 0), (0, V_T, x0, -x2, x4)),
     )
 
 

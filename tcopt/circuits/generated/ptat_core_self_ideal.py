@@ -1,4 +1,4 @@
-"""ptat core, input: self.
+"""ptat core, ideal transistors, input: self.
 
 Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
 """
@@ -7,7 +7,8 @@ from typing import Any
 
 from numpy import exp, log
 
-UNKNOWNS = ('I_out',)
+CURRENTS = ('I_out',)
+UNKNOWNS = ('log_I_out',)
 QUANTITIES = ('M', 'N', 'R_core', 'V_T')
 
 
@@ -18,13 +19,14 @@ def closed_form(M: Any, N: Any, R_core: Any, V_T: Any) -> Any:
 
 
 def partials(log_I_out: Any, M: Any, N: Any, R_core: Any, V_T: Any) -> Any:
-    """Return the loops, their partials by log current, and by log quantity."""
-    x0 = -R_core*exp(log_I_out)
-    x1 = V_T*log(M) + V_T*log(N)
+    """Return the loops, their partials by unknown, and by quantity."""
+    x0 = exp(log_I_out)
+    x1 = -R_core*x0
+    x2 = V_T*log(M) + V_T*log(N)
     return (
-        (x0 + x1,),
-        ((x0,),),
-        ((V_T, V_T, x0, x1),),
+        (x1 + x2,),
+        ((x1,),),
+        ((V_T, V_T, -x0, x2),),
     )
 
 

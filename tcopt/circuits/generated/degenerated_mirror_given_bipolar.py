@@ -1,0 +1,95 @@
+"""degenerated mirror, bipolar transistors, input: given.
+
+Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
+"""
+
+from typing import Any
+
+from numpy import exp, log
+
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
+QUANTITIES = ('I_L', 'I_given', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
+
+
+def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = inverse_beta*x0
+    x2 = exp(log_J_in)
+    x3 = inverse_beta*x2
+    x4 = x2 + x3
+    x5 = V_T*log_J_in
+    x6 = R_output*x0
+    x7 = R_output*x1
+    x8 = inverse_V_A*x6 + inverse_V_A*x7
+    x9 = V_out*inverse_V_A - x8 + 1
+    x10 = V_D*inverse_V_A + 1
+    x11 = V_T*log(x10)
+    x12 = R_input*x2 + R_input*x3
+    x13 = V_T*inverse_V_A/x10
+    f0 = I_L - I_given + x1 + x4
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x9) - x11 + x12 + x5 - x6 - x7
+    f2 = V_D + V_T*log_I_S + x11 - x5
+    a00 = x4
+    a01 = x1
+    a10 = V_T + x12
+    a11 = -V_T*x8/x9 - V_T - x6 - x7
+    a12 = -x13
+    a20 = -V_T
+    a22 = x13 + 1
+    y0 = a00*a11
+    y1 = a10*a22
+    y2 = (a01*a12*a20 - a01*y1 + a22*y0)**(-1.0)
+    return (y2*(-a01*a12*f2 + a01*a22*f1 - a11*a22*f0), y2*(a00*a12*f2 - a00*a22*f1 - f0*(a12*a20 - y1)), y2*(-a01*a20*f1 + a11*a20*f0 - f2*(-a01*a10 + y0)))
+
+
+def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the loops, their partials by unknown, and by quantity."""
+    x0 = exp(log_J_out)
+    x1 = inverse_beta*x0
+    x2 = -I_given
+    x3 = exp(log_J_in)
+    x4 = inverse_beta*x3
+    x5 = x3 + x4
+    x6 = R_output*x0
+    x7 = R_output*x1
+    x8 = R_input*x3 + R_input*x4
+    x9 = V_T*log_J_in
+    x10 = V_D*inverse_V_A
+    x11 = x10 + 1
+    x12 = V_T*log(x11)
+    x13 = inverse_V_A*x6
+    x14 = inverse_V_A*x7
+    x15 = x13 + x14
+    x16 = V_out*inverse_V_A - x15 + 1
+    x17 = -V_T*log_J_out + V_T*log(N) + V_T*log(x16) - x12 + x9
+    x18 = V_T*log_I_S + x12 - x9
+    x19 = x16**(-1.0)
+    x20 = V_T/x11
+    x21 = inverse_V_A*x20
+    x22 = V_T*x19
+    x23 = x10*x20
+    x24 = x14*x22
+    return (
+        (I_L + x1 + x2 + x5, x17 - x6 - x7 + x8, V_D + x18),
+        ((x5, x1, 0), (V_T + x8, -V_T*x15*x19 - V_T - x6 - x7, -x21), (-V_T, 0, x21 + 1)),
+        ((I_L, x2, 0, 0, 0, 0, 0, 0, x1 + x4, 0), (0, 0, V_T, x5, V_T*x19*(-inverse_V_A*x0 - inverse_V_A*x1) - x0 - x1, x17, V_out*inverse_V_A*x22, V_T*V_out*inverse_V_A*x19 - x13*x22 - x23 - x24, R_input*inverse_beta*x3 - x24 - x7, 0), (0, 0, 0, 0, 0, x18, 0, x23, 0, V_T)),
+    )
+
+
+def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the logarithm of each current, its partials by unknown, and by quantity."""
+    x0 = exp(log_J_in)
+    x1 = I_L + x0
+    x2 = exp(log_J_out)
+    x3 = I_L*N
+    x4 = x2 + x3
+    x5 = x1**(-1.0)
+    x6 = x4**(-1.0)
+    x7 = x3*x6
+    return (
+        (log(x1), log(x4)),
+        ((x0*x5, 0, 0), (0, x2*x6, 0)),
+        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
+    )

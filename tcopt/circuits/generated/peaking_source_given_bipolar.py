@@ -1,0 +1,90 @@
+"""peaking source, bipolar transistors, input: given.
+
+Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; not edited by hand.
+"""
+
+from typing import Any
+
+from numpy import exp, log
+
+CURRENTS = ('I_in', 'I_out')
+UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
+QUANTITIES = ('I_L', 'I_given', 'N', 'R_drop', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
+
+
+def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = inverse_beta*exp(log_J_out)
+    x1 = exp(log_J_in)
+    x2 = inverse_beta*x1 + x1
+    x3 = R_drop*x1
+    x4 = R_drop*x0
+    x5 = V_D*inverse_V_A + 1
+    x6 = -V_T*log_J_in + V_T*log(x5)
+    x7 = -V_T
+    x8 = V_T*inverse_V_A/x5
+    f0 = I_L - I_given + x0 + x2
+    f1 = -I_L*R_drop - V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A + 1) - x3 - x4 - x6
+    f2 = V_D + V_T*log_I_S + x6
+    a00 = x2
+    a01 = x0
+    a10 = -x3 - x7
+    a11 = -V_T - x4
+    a12 = -x8
+    a20 = x7
+    a22 = x8 + 1
+    y0 = a00*a11
+    y1 = a10*a22
+    y2 = (a01*a12*a20 - a01*y1 + a22*y0)**(-1.0)
+    return (y2*(-a01*a12*f2 + a01*a22*f1 - a11*a22*f0), y2*(a00*a12*f2 - a00*a22*f1 - f0*(a12*a20 - y1)), y2*(-a01*a20*f1 + a11*a20*f0 - f2*(-a01*a10 + y0)))
+
+
+def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the loops, their partials by unknown, and by quantity."""
+    x0 = -I_given
+    x1 = exp(log_J_in)
+    x2 = inverse_beta*x1
+    x3 = x1 + x2
+    x4 = inverse_beta*exp(log_J_out)
+    x5 = I_L + x4
+    x6 = R_drop*x1
+    x7 = R_drop*x4
+    x8 = V_T*log_J_out
+    x9 = I_L*R_drop
+    x10 = log(N)
+    x11 = V_out*inverse_V_A
+    x12 = x11 + 1
+    x13 = log(x12)
+    x14 = V_D*inverse_V_A
+    x15 = x14 + 1
+    x16 = V_T*log(x15)
+    x17 = V_T*log_J_in
+    x18 = x16 - x17
+    x19 = V_T*log_I_S + x18
+    x20 = -V_T
+    x21 = V_T/x15
+    x22 = inverse_V_A*x21
+    x23 = x12**(-1.0)
+    x24 = x14*x21
+    return (
+        (x0 + x3 + x5, V_T*x10 + V_T*x13 - x18 - x6 - x7 - x8 - x9, V_D + x19),
+        ((x3, x4, 0), (-x20 - x6, -V_T - x7, -x22), (x20, 0, x22 + 1)),
+        ((I_L, x0, 0, 0, 0, 0, 0, x2 + x4, 0), (-x9, 0, V_T, -x1 - x5, V_T*x10 + V_T*x13 - x16 + x17 - x8, V_T*x11*x23, V_T*V_out*inverse_V_A*x23 - x24, -x7, 0), (0, 0, 0, 0, x19, 0, x24, 0, V_T)),
+    )
+
+
+def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the logarithm of each current, its partials by unknown, and by quantity."""
+    x0 = exp(log_J_in)
+    x1 = I_L + x0
+    x2 = exp(log_J_out)
+    x3 = I_L*N
+    x4 = x2 + x3
+    x5 = x1**(-1.0)
+    x6 = x4**(-1.0)
+    x7 = x3*x6
+    return (
+        (log(x1), log(x4)),
+        ((x0*x5, 0, 0), (0, x2*x6, 0)),
+        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0)),
+    )
