@@ -200,7 +200,7 @@ def materials(
 
         write_folder(out, menu_files(found), read=process)
     from tcopt.show.json import menu_document  # noqa: PLC0415
-    from tcopt.show.tables import menu_report  # noqa: PLC0415
+    from tcopt.show.tables.menu import menu_report  # noqa: PLC0415
 
     _answer(lambda: menu_document(found), lambda: menu_report(found), as_json, out)
 
@@ -225,7 +225,7 @@ def design(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
 
         write_folder(out, design_files(result, out), read=study)
     from tcopt.show.json import design_document  # noqa: PLC0415
-    from tcopt.show.tables import design_report  # noqa: PLC0415
+    from tcopt.show.tables.design import design_report  # noqa: PLC0415
 
     _answer(lambda: design_document(result), lambda: design_report(result), as_json, out)
     _exit(result.winner.limit)
@@ -246,7 +246,7 @@ def check(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
 
         write_folder(out, check_files(result), read=study)
     from tcopt.show.json import check_document  # noqa: PLC0415
-    from tcopt.show.tables import check_report  # noqa: PLC0415
+    from tcopt.show.tables.check import check_report  # noqa: PLC0415
 
     _answer(lambda: check_document(result), lambda: check_report(result), as_json, out)
     _exit(result.assessment.limit)

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Any
 from tcopt.assess import Assessment, Verdict
 from tcopt.drift import Drift
 from tcopt.operation import Mix, Operation
+from tcopt.traps import warnings_for
 
 if TYPE_CHECKING:
     from tcopt.check import CheckResult
@@ -63,7 +64,7 @@ def check_document(result: CheckResult) -> Document:
 
 
 def design_document(result: DesignResult) -> Document:
-    """Return what `design` found, best first."""
+    """Return what `design` found, best first; the warnings are those for the first."""
     return {
         **_study(result.study),
         "designs": [
@@ -89,6 +90,7 @@ def design_document(result: DesignResult) -> Document:
             }
             for slot, point in result.needed.items()
         },
+        "warnings": list(warnings_for(result.winner)),
         "examined": result.examined,
         "skipped": result.skipped,
     }

@@ -81,9 +81,8 @@ def place(
         box = spot.box
         if any(_crosses(a, b, box) for a, b in obstacles):
             text.set_path_effects([withStroke(linewidth=2.5, foreground="white", alpha=0.85)])
-        text.set_position(
-            axes.transData.inverted().transform(((box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2))
-        )
+        centre = axes.transData.inverted().transform(_middle(box))
+        text.set_position((float(centre[0]), float(centre[1])))
         (x0, y0), (x1, y1) = spot.leader
         length, start = hypot(x1 - x0, y1 - y0), label.radius * pixels
         if length > start + _NEAR * pixels:
