@@ -1,0 +1,1 @@
+"""What silicon makes of a finished design: corners, samples, yield, and trim."""
