@@ -47,6 +47,7 @@ NOMENCLATURE = _table(
     ("J_in", "A", "input transistor's current without leakage"),
     ("J_core", "A", "PTAT core's current without leakage"),
     ("J_out", "A", "output transistor's current without leakage"),
+    ("I_others", "A", "base currents of the other outputs that share the input"),
     ("V_D", "V", "collector-emitter or drain-source voltage of the diode-connected transistor"),
     ("V_TH", "V", "threshold voltage"),
     ("n", "1", "slope factor"),

@@ -16,8 +16,10 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
     N = terms.symbol("N")
     I_in, I_out = terms.current("I_in", area=1), terms.current("I_out", area=N)
     q2 = terms.transistor(I_out, N, terms.resistance("output"), to_output=True)
-    q1 = terms.input_diode(I_in, terms.resistance("input"), q2.base_current)
-    bases = q1.base_current + q2.base_current
+    # what else hangs on the reference branch takes its base currents from it, too
+    others = q2.base_current + terms.other_outputs()
+    q1 = terms.input_diode(I_in, terms.resistance("input"), others)
+    bases = q1.base_current + others
     voltage = q1.control_voltage + terms.above_base(bases)
     return (
         input_loop(terms, feed, I_in + terms.supplied(bases), voltage),

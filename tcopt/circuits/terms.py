@@ -169,6 +169,12 @@ class Terms:
             sp.Integer(1),
         )
 
+    def other_outputs(self) -> sp.Expr:
+        """Return the base currents of outputs that share the input with this one [A]."""
+        if self.device in {Device.BIPOLAR, Device.FOLLOWED}:
+            return self.symbol("I_others")
+        return sp.Integer(0)
+
     def supplied(self, bases: sp.Expr) -> sp.Expr:
         """Return what the input has to give for these base currents [A]."""
         return self._supplied_share() * bases

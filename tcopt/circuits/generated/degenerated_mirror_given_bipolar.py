@@ -9,10 +9,10 @@ from numpy import exp, log
 
 CURRENTS = ('I_in', 'I_out')
 UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
-QUANTITIES = ('I_L', 'I_given', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
+QUANTITIES = ('I_L', 'I_given', 'I_others', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
-def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
     x1 = inverse_beta*x0
@@ -28,7 +28,7 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any
     x11 = V_T*log(x10)
     x12 = R_input*x2 + R_input*x3
     x13 = V_T*inverse_V_A/x10
-    f0 = I_L - I_given + x1 + x4
+    f0 = I_L - I_given + I_others + x1 + x4
     f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x9) - x11 + x12 + x5 - x6 - x7
     f2 = V_D + V_T*log_I_S + x11 - x5
     a00 = x4
@@ -44,7 +44,7 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any
     return (y2*(-a01*a12*f2 + a01*a22*f1 - a11*a22*f0), y2*(a00*a12*f2 - a00*a22*f1 - f0*(a12*a20 - y1)), y2*(-a01*a20*f1 + a11*a20*f0 - f2*(-a01*a10 + y0)))
 
 
-def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by unknown, and by quantity."""
     x0 = exp(log_J_out)
     x1 = inverse_beta*x0
@@ -72,13 +72,13 @@ def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N:
     x23 = x10*x20
     x24 = x14*x22
     return (
-        (I_L + x1 + x2 + x5, x17 - x6 - x7 + x8, V_D + x18),
+        (I_L + I_others + x1 + x2 + x5, x17 - x6 - x7 + x8, V_D + x18),
         ((x5, x1, 0), (V_T + x8, -V_T*x15*x19 - V_T - x6 - x7, -x21), (-V_T, 0, x21 + 1)),
-        ((I_L, x2, 0, 0, 0, 0, 0, 0, x1 + x4, 0), (0, 0, V_T, x5, V_T*x19*(-inverse_V_A*x0 - inverse_V_A*x1) - x0 - x1, x17, V_out*inverse_V_A*x22, V_T*V_out*inverse_V_A*x19 - x13*x22 - x23 - x24, R_input*inverse_beta*x3 - x24 - x7, 0), (0, 0, 0, 0, 0, x18, 0, x23, 0, V_T)),
+        ((I_L, x2, I_others, 0, 0, 0, 0, 0, 0, x1 + x4, 0), (0, 0, 0, V_T, x5, V_T*x19*(-inverse_V_A*x0 - inverse_V_A*x1) - x0 - x1, x17, V_out*inverse_V_A*x22, V_T*V_out*inverse_V_A*x19 - x13*x22 - x23 - x24, R_input*inverse_beta*x3 - x24 - x7, 0), (0, 0, 0, 0, 0, 0, x18, 0, x23, 0, V_T)),
     )
 
 
-def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the logarithm of each current, its partials by unknown, and by quantity."""
     x0 = exp(log_J_in)
     x1 = I_L + x0
@@ -91,5 +91,5 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: 
     return (
         (log(x1), log(x4)),
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
-        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
+        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
     )

@@ -9,10 +9,10 @@ from numpy import exp, log
 
 CURRENTS = ('I_in', 'I_out')
 UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
-QUANTITIES = ('I_L', 'I_given', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
+QUANTITIES = ('I_L', 'I_given', 'I_others', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
-def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = 1 + inverse_beta**(-1.0)
     x1 = x0**(-1.0)
@@ -32,10 +32,10 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any
     x15 = inverse_beta*x9
     x16 = R_input*x5
     x17 = inverse_beta*x16 + x16
-    x18 = x3 + x6
+    x18 = I_others + x3 + x6
     x19 = V_T*inverse_V_A/x13
     x20 = V_T/x18
-    f0 = I_L - I_given + x4 + x7
+    f0 = I_L - I_given + I_others*x1 + x4 + x7
     f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x12) - x14 - x15 + x17 + x8 - x9
     f2 = V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x0) - V_T*log(x18) + x14 - x8
     a00 = x7
@@ -53,7 +53,7 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any
     return (y3*(-a01*a12*f2 + a01*a22*f1 - f0*(y0 - y1)), y3*(a00*a12*f2 - a00*a22*f1 - f0*(a12*a20 - y2)), y3*(-f0*(a10*a21 - a11*a20) - f1*(-a00*a21 + a01*a20) - f2*(a00*a11 - a01*a10)))
 
 
-def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by unknown, and by quantity."""
     x0 = inverse_beta**(-1.0)
     x1 = x0 + 1
@@ -62,44 +62,46 @@ def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N:
     x4 = inverse_beta*x3
     x5 = x2*x4
     x6 = -I_given
-    x7 = exp(log_J_in)
-    x8 = inverse_beta*x7
-    x9 = x2*x8
-    x10 = x7 + x9
-    x11 = R_output*x3
-    x12 = inverse_beta*x11
-    x13 = R_input*x7
-    x14 = inverse_beta*x13 + x13
-    x15 = V_T*log_J_in
-    x16 = V_D*inverse_V_A
-    x17 = x16 + 1
-    x18 = V_T*log(x17)
-    x19 = inverse_V_A*x11
-    x20 = inverse_beta*x19
-    x21 = x19 + x20
-    x22 = V_out*inverse_V_A - x21 + 1
-    x23 = -V_T*log_J_out + V_T*log(N) + V_T*log(x22) + x15 - x18
-    x24 = 2*V_T
-    x25 = x4 + x8
-    x26 = V_T*log(inverse_beta) + V_T*log(x1) - V_T*log(x25) + log_I_S*x24 - x15 + x18
-    x27 = x22**(-1.0)
-    x28 = V_T/x17
-    x29 = inverse_V_A*x28
-    x30 = V_T/x25
-    x31 = x30*x8
-    x32 = x30*x4
-    x33 = (inverse_beta + x0 + 2)**(-1.0)
-    x34 = V_T*x27
-    x35 = x16*x28
-    x36 = x20*x34
+    x7 = I_others*x2
+    x8 = exp(log_J_in)
+    x9 = inverse_beta*x8
+    x10 = x2*x9
+    x11 = x10 + x8
+    x12 = R_output*x3
+    x13 = inverse_beta*x12
+    x14 = R_input*x8
+    x15 = inverse_beta*x14 + x14
+    x16 = V_T*log_J_in
+    x17 = V_D*inverse_V_A
+    x18 = x17 + 1
+    x19 = V_T*log(x18)
+    x20 = inverse_V_A*x12
+    x21 = inverse_beta*x20
+    x22 = x20 + x21
+    x23 = V_out*inverse_V_A - x22 + 1
+    x24 = -V_T*log_J_out + V_T*log(N) + V_T*log(x23) + x16 - x19
+    x25 = 2*V_T
+    x26 = I_others + x4 + x9
+    x27 = V_T*log(inverse_beta) + V_T*log(x1) - V_T*log(x26) + log_I_S*x25 - x16 + x19
+    x28 = x23**(-1.0)
+    x29 = V_T/x18
+    x30 = inverse_V_A*x29
+    x31 = V_T/x26
+    x32 = x31*x9
+    x33 = x31*x4
+    x34 = (inverse_beta + x0 + 2)**(-1.0)
+    x35 = inverse_beta**2
+    x36 = V_T*x28
+    x37 = x17*x29
+    x38 = x21*x36
     return (
-        (I_L + x10 + x5 + x6, -x11 - x12 + x14 + x23, V_D + x26),
-        ((x10, x5, 0), (V_T + x14, -V_T*x21*x27 - V_T - x11 - x12, -x29), (-V_T - x31, -x32, x29 + 1)),
-        ((I_L, x6, 0, 0, 0, 0, 0, 0, x33*x4 + x33*x8 + x5 + x9, 0), (0, 0, V_T, x7 + x8, V_T*x27*(-inverse_V_A*x3 - inverse_V_A*x4) - x3 - x4, x23, V_out*inverse_V_A*x34, V_T*V_out*inverse_V_A*x27 - x19*x34 - x35 - x36, R_input*inverse_beta*x7 - x12 - x36, 0), (0, 0, 0, 0, 0, x26, 0, x35, -V_T*inverse_beta/(inverse_beta**2 + inverse_beta) + V_T - x31 - x32, x24)),
+        (I_L + x11 + x5 + x6 + x7, -x12 - x13 + x15 + x24, V_D + x27),
+        ((x11, x5, 0), (V_T + x15, -V_T*x22*x28 - V_T - x12 - x13, -x30), (-V_T - x32, -x33, x30 + 1)),
+        ((I_L, x6, x7, 0, 0, 0, 0, 0, 0, I_others*inverse_beta/(2*inverse_beta + x35 + 1) + x10 + x34*x4 + x34*x9 + x5, 0), (0, 0, 0, V_T, x8 + x9, V_T*x28*(-inverse_V_A*x3 - inverse_V_A*x4) - x3 - x4, x24, V_out*inverse_V_A*x36, V_T*V_out*inverse_V_A*x28 - x20*x36 - x37 - x38, R_input*inverse_beta*x8 - x13 - x38, 0), (0, 0, -I_others*x31, 0, 0, 0, x27, 0, x37, -V_T*inverse_beta/(inverse_beta + x35) + V_T - x32 - x33, x25)),
     )
 
 
-def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the logarithm of each current, its partials by unknown, and by quantity."""
     x0 = exp(log_J_in)
     x1 = I_L + x0
@@ -112,5 +114,5 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: 
     return (
         (log(x1), log(x4)),
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
-        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
+        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
     )

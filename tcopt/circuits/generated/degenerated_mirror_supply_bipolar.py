@@ -9,10 +9,10 @@ from numpy import exp, log
 
 CURRENTS = ('I_in', 'I_out')
 UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
-QUANTITIES = ('I_L', 'N', 'R_feed', 'R_input', 'R_output', 'V_CC', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
+QUANTITIES = ('I_L', 'I_others', 'N', 'R_feed', 'R_input', 'R_output', 'V_CC', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
-def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
     x1 = R_feed*inverse_beta*x0
@@ -32,7 +32,7 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: Any,
     x15 = inverse_beta*x11
     x16 = V_T + x9
     x17 = V_T*inverse_V_A/x6
-    f0 = -I_L*R_feed + V_CC + V_T*log_I_S - x1 - x10 - x4
+    f0 = -I_L*R_feed - I_others*R_feed + V_CC + V_T*log_I_S - x1 - x10 - x4
     f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x14) + x10 - x11 - x15
     f2 = V_D + V_T*log_I_S - x5 + x7
     a00 = -x16 - x4
@@ -51,48 +51,49 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: Any,
     return (y4*(a01*a22*f1 - a11*a22*f0 - f2*(y0 - y1)), y4*(-f0*(a12*a20 - y3) - f1*(-a02*a20 + y2) - f2*(-a00*a12 + a02*a10)), y4*(-a01*a20*f1 + a11*a20*f0 - f2*(a00*a11 - a01*a10)))
 
 
-def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the loops, their partials by unknown, and by quantity."""
     x0 = exp(log_J_in)
     x1 = R_feed*x0
     x2 = I_L*R_feed
-    x3 = R_input*x0
-    x4 = inverse_beta*x3
-    x5 = x3 + x4
-    x6 = inverse_beta*x1
-    x7 = exp(log_J_out)
-    x8 = inverse_beta*x7
-    x9 = R_feed*x8
-    x10 = x6 + x9
-    x11 = V_T*log_J_in
-    x12 = V_D*inverse_V_A
-    x13 = x12 + 1
-    x14 = V_T*log(x13)
-    x15 = x11 - x14
-    x16 = R_output*x7
-    x17 = inverse_beta*x16
-    x18 = inverse_V_A*x16
-    x19 = inverse_beta*x18
-    x20 = x18 + x19
-    x21 = V_out*inverse_V_A - x20 + 1
-    x22 = -V_T*log_J_out + V_T*log(N) + V_T*log(x21) + x15
-    x23 = V_T*log_I_S - x11 + x14
-    x24 = V_T + x5
-    x25 = V_T/x13
-    x26 = inverse_V_A*x25
-    x27 = x21**(-1.0)
-    x28 = inverse_beta*x0 + x0
-    x29 = x12*x25
-    x30 = V_T*x27
-    x31 = x19*x30
+    x3 = I_others*R_feed
+    x4 = R_input*x0
+    x5 = inverse_beta*x4
+    x6 = x4 + x5
+    x7 = inverse_beta*x1
+    x8 = exp(log_J_out)
+    x9 = inverse_beta*x8
+    x10 = R_feed*x9
+    x11 = x10 + x7
+    x12 = V_T*log_J_in
+    x13 = V_D*inverse_V_A
+    x14 = x13 + 1
+    x15 = V_T*log(x14)
+    x16 = x12 - x15
+    x17 = R_output*x8
+    x18 = inverse_beta*x17
+    x19 = inverse_V_A*x17
+    x20 = inverse_beta*x19
+    x21 = x19 + x20
+    x22 = V_out*inverse_V_A - x21 + 1
+    x23 = -V_T*log_J_out + V_T*log(N) + V_T*log(x22) + x16
+    x24 = V_T*log_I_S - x12 + x15
+    x25 = V_T + x6
+    x26 = V_T/x14
+    x27 = inverse_V_A*x26
+    x28 = x22**(-1.0)
+    x29 = inverse_beta*x0 + x0
+    x30 = x13*x26
+    x31 = V_T*x28
+    x32 = x20*x31
     return (
-        (V_CC + V_T*log_I_S - x1 - x10 - x15 - x2 - x5, -x16 - x17 + x22 + x5, V_D + x23),
-        ((-x1 - x24 - x6, -x9, x26), (x24, -V_T*x20*x27 - V_T - x16 - x17, -x26), (-V_T, 0, x26 + 1)),
-        ((-x2, 0, -I_L - x28 - x8, -x28, 0, V_CC, x23, 0, x29, -x10 - x4, V_T), (0, V_T, 0, x28, V_T*x27*(-inverse_V_A*x7 - inverse_V_A*x8) - x7 - x8, 0, x22, V_out*inverse_V_A*x30, V_T*V_out*inverse_V_A*x27 - x18*x30 - x29 - x31, -x17 - x31 + x4, 0), (0, 0, 0, 0, 0, 0, x23, 0, x29, 0, V_T)),
+        (V_CC + V_T*log_I_S - x1 - x11 - x16 - x2 - x3 - x6, -x17 - x18 + x23 + x6, V_D + x24),
+        ((-x1 - x25 - x7, -x10, x27), (x25, -V_T*x21*x28 - V_T - x17 - x18, -x27), (-V_T, 0, x27 + 1)),
+        ((-x2, -x3, 0, -I_L - I_others - x29 - x9, -x29, 0, V_CC, x24, 0, x30, -x11 - x5, V_T), (0, 0, V_T, 0, x29, V_T*x28*(-inverse_V_A*x8 - inverse_V_A*x9) - x8 - x9, 0, x23, V_out*inverse_V_A*x31, V_T*V_out*inverse_V_A*x28 - x19*x31 - x30 - x32, -x18 - x32 + x5, 0), (0, 0, 0, 0, 0, 0, 0, x24, 0, x30, 0, V_T)),
     )
 
 
-def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the logarithm of each current, its partials by unknown, and by quantity."""
     x0 = exp(log_J_in)
     x1 = I_L + x0
@@ -105,5 +106,5 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_feed: A
     return (
         (log(x1), log(x4)),
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
-        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, x7, 0, 0, 0, 0, 0, 0, 0, 0, 0)),
+        ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0, 0, 0)),
     )
