@@ -36,15 +36,6 @@ def finished_study(operation: Operation) -> Study:
         )
         for name in study.resistors
     }
-    return Study(
-        title=study.title,
-        process=study.process,
-        range=study.range,
-        circuit=type(made)(**{**given, **settled}),
-        target=study.target,
-        resistors=resistors,
-        search=study.search,
-        spread=study.spread,
-        trim=study.trim,
-        path=study.path,
-    )
+    everything = {name: getattr(study, name) for name in Study.model_fields}
+    circuit = type(made)(**{**given, **settled})
+    return Study(**{**everything, "circuit": circuit, "resistors": resistors})

@@ -91,6 +91,8 @@ def circuit_words(study: Study, area: float, mirror: float, input_current: float
         words.append(f"supply {format_quantity(made.supply, 'V')}")
     if made.reference_voltage is not None:
         words.append(f"reference {format_quantity(made.reference_voltage, 'V')}")
+    if made.effects:
+        words.append(f"with {' and '.join(made.effects)}")
     return ", ".join(words)
 
 

@@ -106,8 +106,12 @@ def _in_common(result: DesignResult) -> str:
         for heading, cell in _choice_columns(result.study)
         if len({cell(found) for found in result.designs}) == 1
     ]
-    supply = result.study.circuit.supply
-    return "".join(words) + (f", supply {format_quantity(supply, 'V')}" if supply else "")
+    made = result.study.circuit
+    if made.supply is not None:
+        words.append(f", supply {format_quantity(made.supply, 'V')}")
+    if made.effects:
+        words.append(f", with {' and '.join(made.effects)}")
+    return "".join(words)
 
 
 def _settled(result: DesignResult) -> list[Text]:
