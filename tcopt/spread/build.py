@@ -22,7 +22,7 @@ from tcopt.spread.variation import (
 from tcopt.units import format_quantity
 
 if TYPE_CHECKING:
-    from tcopt.study import CommonPart, Material, Part, Transistor
+    from tcopt.study import CommonPart, Material, MosTransistor, Part, Transistor
 
 __all__ = ["variation_of"]
 
@@ -32,8 +32,8 @@ def variation_of(operation: Operation) -> Variation:
 
     A figure that shares steps with others moves by
     ``sigma (sum sqrt(share) z_step + sqrt(1 - sum share) z_own)``. A step has one
-    variate for values (sheet resistance, saturation current, gain), one for TC1
-    and one for TC2.
+    variate for values (sheet resistance, saturation current, gain), one for TC1, one
+    for TC2, one each for a threshold and a specific current.
 
     Parameters
     ----------
@@ -46,8 +46,12 @@ def variation_of(operation: Operation) -> Variation:
         for index, part in enumerate(mix.parts):
             builder.add_matching(slot, index, part)
     transistor = operation.study.circuit.transistor
-    if transistor is not None:
-        builder.add_transistor(transistor)
+    if transistor is None:
+        pass
+    elif transistor.kind == "mos":
+        builder.add_mos(transistor)
+    else:
+        builder.add_bipolar(transistor)
     builder.add_outside()
     builder.add_tests()
     return builder.made()
@@ -130,25 +134,43 @@ class _Builder:
         self.missing.append(f"{name}: no width is given; taken at the narrowest, {width}")
         return part.value / material.sheet_resistance * material.min_width**2, ""
 
-    def add_transistor(self, transistor: Transistor) -> None:
+    def add_bipolar(self, transistor: Transistor) -> None:
         """Add saturation current, current gain, and the mismatch of the pair."""
         name, common = transistor.name, transistor.common
-        takes = self.operation.circuit.quantities
-        if "log_I_S" in takes:
+        if "log_I_S" in self.operation.circuit.quantities:
             sigma = transistor.log_saturation_spread
-            self._load(("log_I_S",), sigma, f"saturation current of {name}", LOT, common=common)
-        if "inverse_beta" in takes:
-            gain = f"current gain of {name}"
-            self._load(("gain",), transistor.gain_spread, gain, LOT, common=common)
-        if "N" not in takes:
+            text = f"saturation current of {name}"
+            self._load(("saturation current",), sigma, text, LOT, common=common)
+        if "current gain" in self.operation.study.circuit.effects:
+            text = f"current gain of {name}"
+            self._load(("gain",), transistor.gain_spread, text, LOT, common=common)
+        self._add_pair("pair", name, transistor.matching, "emitter_area", transistor.emitter_area)
+
+    def add_mos(self, transistor: MosTransistor) -> None:
+        """Add threshold, specific current, and the mismatch of the pair's thresholds."""
+        name, common = transistor.name, transistor.common
+        for figure, sigma in (
+            ("threshold", transistor.threshold_spread),
+            ("specific current", transistor.specific_current_spread),
+        ):
+            self._load((figure,), sigma, f"{figure} of {name}", LOT, common=common, order=figure)
+        figure = "threshold of the pair"
+        self._add_pair(figure, name, transistor.matching, "gate_area", transistor.gate_area)
+
+    def _add_pair(
+        self, figure: str, name: str, matching: float | None, key: str, area: float | None
+    ) -> None:
+        circuit = self.operation.study.circuit.circuit
+        if "area_ratio" not in circuit.choices or not (
+            circuit.is_mirror or "mirror_ratio" in circuit.choices
+        ):
             return
         sigma, lacking = None, "no matching coefficient is given"
-        if transistor.matching is not None:
-            lacking = "no emitter_area is given"
-            if (area := transistor.emitter_area) is not None:
-                second = area * self.operation.choices.area_ratio
-                sigma = pair_deviation(transistor.matching, area, second)
-        self._load(("pair",), sigma, f"mismatch of the {name} pair", MISMATCH, lacking=lacking)
+        if matching is not None:
+            lacking = f"no {key} is given"
+            if area is not None:
+                sigma = pair_deviation(matching, area, area * self.operation.choices.area_ratio)
+        self._load((figure,), sigma, f"mismatch of the {name} pair", MISMATCH, lacking=lacking)
 
     def add_outside(self) -> None:
         """Add supply, given input, reference voltage and the ratio of the mirror on top."""

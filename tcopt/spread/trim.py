@@ -89,7 +89,7 @@ def output_of(
     if scale is not None:
         inside, behind = _scales(insertions, scale)
     circuit = variation.operation.circuit
-    found = currents(circuit, variation.quantities(z, temperature, inside))["I_out"]
+    found = currents(circuit, variation.quantities(z, temperature, inside))[circuit.currents[-1]]
     shape = (len(z), np.shape(temperature)[-1])
     return np.asarray(np.broadcast_to(found * behind, shape))
 

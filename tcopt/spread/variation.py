@@ -27,14 +27,18 @@ LOT, MISMATCH, FROM_OUTSIDE, TEST = "lot to lot", "mismatch", "from outside", "e
 """Kinds of variates. Those of the last do not make the part, but lead its trim astray."""
 
 Figure = tuple[str, ...]
-"""What varies: ('sheet', material), ('tc1', material), ('matching', slot, index), ('log_I_S',)"""
+"""What varies: ('sheet', material), ('tc1', material), ('matching', slot, index), ('threshold',)"""
 Scale = tuple[str, str | None]
 """What a trim scales: a slot and the one material of it, or None for all of it."""
 
 _FACTORS = {"V_CC": "supply", "V_ref": "reference voltage", "I_given": "input", "M": "mirror ratio"}
 """Quantities that are multiplied by one plus the deviation of a figure."""
-_LOGARITHMS = {"N": ("pair", 1.0), "inverse_beta": ("gain", -1.0)}
+_LOGARITHMS = {
+    "N": ("pair", 1.0), "inverse_beta": ("gain", -1.0), "I_spec": ("specific current", 1.0),
+}  # fmt: skip
 """Quantities whose logarithm moves with a figure, and which way."""
+_SUMS = {"log_I_S": "saturation current", "V_TH": "threshold"}
+"""Quantities to which a figure is added."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -83,8 +87,8 @@ class Variation:
         """Return the circuit's quantities for many parts, of (parts, temperatures) or alike.
 
         ``R = R_0 (1 + sheet)(1 + matching) scale (1 + (TC1 + tc1) d + (TC2 + tc2) d^2)``,
-        deviations in small letters; ``ln I_S``, ``ln beta`` and ``ln N`` move by theirs,
-        supply, input, reference and mirror ratio by a factor.
+        deviations in small letters; the logarithms of I_S, beta, I_spec and N, and V_TH, move
+        by theirs; supply, input, reference and mirror ratio by a factor.
 
         Parameters
         ----------
@@ -100,11 +104,26 @@ class Variation:
         for name, (figure, sign) in _LOGARITHMS.items():
             if name in found and (figure,) in self.loads:
                 found[name] = found[name] * np.exp(sign * self.deviation((figure,), z))
-        if "log_I_S" in found:
-            found["log_I_S"] = found["log_I_S"] + self.deviation(("log_I_S",), z)
+        for name, figure in _SUMS.items():
+            if name in found and (figure,) in self.loads:
+                found[name] = found[name] + self.deviation((figure,), z)
+        if ("threshold of the pair",) in self.loads:
+            offset = self.deviation(("threshold of the pair",), z)
+            found["N"] = found["N"] * np.exp(offset * self._per_volt(T))
         for slot, mix in self.operation.mixes.items():
             found[resistance_name(slot)] = self._resistance(slot, mix, z, T, scales or {})
         return found
+
+    def _per_volt(self, T: Array) -> Array:
+        """Return ``g_m/I`` of the output transistor of the design as stated [1/V].
+
+        ``(1 - exp(-s))/(s n V_T)``, ``s = sqrt(I/(N I_spec))``, from the law in all regions of
+        inversion. So an offset between the thresholds of a pair, small against n V_T, moves
+        the current as this ratio of widths does.
+        """
+        found = self.operation.quantities(T)
+        s = np.sqrt(self.operation.output(T) / (found["N"] * found["I_spec"]))
+        return np.asarray(-np.expm1(-s) / (s * found["n"] * found["V_T"]))
 
     def _resistance(
         self, slot: str, mix: Mix, z: Array, T: Array, scales: Mapping[Scale, ArrayLike]
