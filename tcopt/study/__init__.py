@@ -3,14 +3,15 @@
 from tcopt.study.choices import Choice, Span
 from tcopt.study.circuit import CircuitChoices
 from tcopt.study.deviations import CommonPart
+from tcopt.study.layout import Layout
 from tcopt.study.load import load_process, load_study
+from tcopt.study.part import Part, drawn_material, drawn_value
 from tcopt.study.process import Material, Process
 from tcopt.study.question import (
     GRADES,
     FixedSlot,
     Limit,
     OpenSlot,
-    Part,
     Search,
     Target,
     TemperatureRange,
@@ -23,7 +24,8 @@ from tcopt.study.write import study_text
 
 __all__ = [
     "GRADES", "OUTPUT_MIRROR", "BaseEmitter", "Choice", "CircuitChoices", "CommonPart",
-    "FixedSlot", "Insertion", "Limit", "Material", "MosTransistor", "OpenSlot", "Part", "Process", "Search",
-    "Span", "Spread", "Study", "Target", "TemperatureRange", "Transistor", "Trim", "load_process",
-    "load_study", "study_text", "write_first_study",
+    "FixedSlot", "Insertion", "Layout", "Limit", "Material", "MosTransistor", "OpenSlot", "Part",
+    "Process", "Search", "Span", "Spread", "Study", "Target", "TemperatureRange", "Transistor",
+    "Trim", "drawn_material", "drawn_value", "load_process", "load_study", "study_text",
+    "write_first_study",
 ]  # fmt: skip

@@ -33,6 +33,15 @@ from tcopt.units import shown
 __all__ = ["Length", "Material", "Process"]
 
 Length = Annotated[float, quantity("m", above=0, below=1)]
+_EndResistance = Annotated[
+    float,
+    quantity(
+        "ohm m",
+        "the resistance of one end times its width such as '200 ohm um', or a bare number in ohm m",
+        at_least=0,
+        below=1,
+    ),
+]
 _Matching = Annotated[
     float,
     quantity("m", "a matching coefficient such as '2 % um', or a bare number in m", at_least=0),
@@ -59,6 +68,8 @@ class Material(Model):
         variance of sheet resistance, tc1 and tc2
     matching : Pelgrom's coefficient: sigma(dR/R) times the root of the area [m]
     min_width : narrowest resistor drawn [m]
+    end_resistance : of one end, contacts and current crowding, times its width [ohm m]
+    end_tc1, end_tc2 : coefficients of the ends; those of the body if not given
     valid : range in which the coefficients were fitted [K]
     source : where the figures come from
     """
@@ -74,6 +85,9 @@ class Material(Model):
     common: CommonParts = ()
     matching: _Matching | None = None
     min_width: Length | None = None
+    end_resistance: _EndResistance | None = None
+    end_tc1: Slope | None = None
+    end_tc2: Curvature | None = None
     valid: tuple[Temperature, Temperature] | None = None
     source: Text = ""
 

@@ -12,16 +12,17 @@ from tcopt.study.choices import MaterialName
 from tcopt.study.curve import Curve, first_problem
 from tcopt.study.fields import (
     Current,
-    Resistance,
     Slope,
     Temperature,
+    quantity,
     refusal,
     whole,
     without_repeats,
     words,
 )
 from tcopt.study.gate import INTERNAL, Model
-from tcopt.study.process import Length, Material
+from tcopt.study.part import Part
+from tcopt.study.process import Material
 from tcopt.units import format_quantity, parse, shown
 
 __all__ = [
@@ -174,29 +175,6 @@ class Target(Model):
         return self
 
 
-class Part(Model):
-    """A resistor.
-
-    Attributes
-    ----------
-    material : what it is made of
-    value : resistance at that material's reference [ohm]
-    width : as drawn, for the area that matching goes with [m]
-    """
-
-    material: MaterialName
-    value: Resistance
-    width: Length | None = None
-
-    @property
-    def area(self) -> float | None:
-        """Drawn area [m^2]: squares times the width squared; None without the data for it."""
-        sheet = self.material.sheet_resistance
-        if self.width is None or sheet is None:
-            return None
-        return self.value / sheet * self.width**2
-
-
 Join = Annotated[Literal["series", "parallel"], words("series", "parallel")]
 
 
@@ -251,7 +229,13 @@ class Search(Model):
 
     ``digits``: significant digits to which resistor values are rounded.
     ``show``: designs in the table, best first.
+    ``purpose`` (the key ``for``): 'paper', the typical part alone; or 'silicon', all parts
+    within ``sigma`` standard deviations of what varies from lot to lot, each trimmed.
     """
 
     digits: Annotated[int, whole(2, 8)] = 5
     show: Annotated[int, whole(1, 1000)] = 10
+    purpose: Annotated[Literal["paper", "silicon"], words("paper", "silicon")] = Field(
+        default="paper", validation_alias="for"
+    )
+    sigma: Annotated[float, quantity("1", "a pure number such as 3", above=0, below=10)] = 3.0

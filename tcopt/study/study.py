@@ -13,6 +13,7 @@ from tcopt.study.choices import Choice, is_single, scaled
 from tcopt.study.circuit import CircuitChoices
 from tcopt.study.fields import Title, refusal
 from tcopt.study.gate import INTERNAL, Model, quoted
+from tcopt.study.layout import Layout
 from tcopt.study.process import Material, Process
 from tcopt.study.question import (
     FixedSlot,
@@ -43,6 +44,7 @@ class Study(Model):
     search: Search = Field(default_factory=Search)
     spread: Spread = Field(default_factory=Spread)
     trim: Trim | None = None
+    layout: Layout | None = None
     path: Path | None = Field(default=None, validation_alias=f"{INTERNAL}path")
 
     @property
@@ -106,6 +108,26 @@ class Study(Model):
                     f"a table with parts, or with materials to choose among: {slot.meaning}",
                     f"resistors.{slot.name}",
                 )
+        return self
+
+    @model_validator(mode="after")
+    def _layout_has_its_data(self) -> Study:
+        layout = self.layout
+        if layout is None or layout.standard is not None:
+            return self
+        wanted = {"sheet_resistance": "sizes are drawn", "min_width": "sizes are drawn"}
+        if layout.mismatch is not None:
+            wanted["matching"] = "layout.mismatch sets the area"
+        for key, material in self._materials():
+            if not key.startswith("resistors."):
+                continue
+            for field, why in wanted.items():
+                if getattr(material, field) is None:
+                    raise refusal(
+                        f"{material.name!r}, which has no {field}",
+                        f"materials with a {field}, since {why}",
+                        key,
+                    )
         return self
 
     @model_validator(mode="after")

@@ -10,7 +10,8 @@ import tomlkit
 
 from tcopt.errors import InputError
 from tcopt.study.choices import Choice, Span
-from tcopt.study.question import FixedSlot, Limit, OpenSlot
+from tcopt.study.layout import Layout
+from tcopt.study.question import FixedSlot, Limit, OpenSlot, Search
 from tcopt.study.spread import Insertion, Spread, Trim
 from tcopt.study.study import Study
 from tcopt.units import exact
@@ -109,14 +110,49 @@ def _slot(slot: FixedSlot | OpenSlot) -> dict[str, Any]:
         for part in slot.parts:
             entry = tomlkit.inline_table()
             entry.update({"material": part.material.name, "value": exact(part.value, "ohm")})
-            if part.width is not None:
-                entry["width"] = exact(part.width, "m")
+            for key in ("width", "length"):
+                if (size := getattr(part, key)) is not None:
+                    entry[key] = exact(size, "m")
+            for key in ("series", "parallel"):
+                if (count := getattr(part, key)) != 1:
+                    entry[key] = count
             parts.append(entry)
         return {"parts": parts.multiline(len(slot.parts) > 1), "join": slot.join}
     names = tomlkit.array()
     names.extend(material.name for material in slot.materials)
     names.multiline(len(names.as_string()) > _WIDEST)
     return {"materials": names, "pieces": slot.pieces, "join": slot.join}
+
+
+def _search(search: Search) -> dict[str, Any]:
+    table: dict[str, Any] = {"digits": search.digits, "show": search.show}
+    usual = Search()
+    if search.purpose != usual.purpose:
+        table["for"] = search.purpose
+    if search.sigma != usual.sigma:
+        table["sigma"] = _number(search.sigma)
+    return table
+
+
+_LAYOUT_UNITS = {
+    "standard": None, "tolerance": "1", "grid": "m", "unit": None, "segment": "m", "longest": "m",
+    "least_squares": "1", "most_segments": None, "spacing": "m", "mismatch": "1",
+    "area_limit": "m^2", "front": None,
+}  # fmt: skip
+
+
+def _layout(layout: Layout) -> dict[str, Any]:
+    given = {
+        key: value for key, value in layout if value is not None and key in layout.model_fields_set
+    }
+    table: dict[str, Any] = {}
+    for key, value in given.items():
+        unit = _LAYOUT_UNITS[key]
+        if key == "least_squares":
+            table[key] = _number(value)
+        else:
+            table[key] = value if unit is None else exact(value, unit)
+    return table
 
 
 _SPREAD_RATIOS = ("supply", "input_current", "reference_voltage", "mirror_ratio")
@@ -180,8 +216,9 @@ def study_text(study: Study, folder: str | Path) -> str:
             "circuit": _circuit(study),
             "target": _target(study, folder),
             "resistors": {name: _slot(slot) for name, slot in study.resistors.items()},
-            "search": {"digits": study.search.digits, "show": study.search.show},
+            "search": _search(study.search),
             **({"spread": _spread(study.spread)} if study.spread != Spread() else {}),
             **({"trim": _trim(study.trim)} if study.trim is not None else {}),
+            **({"layout": _layout(study.layout)} if study.layout is not None else {}),
         }
     )
