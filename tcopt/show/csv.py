@@ -16,10 +16,11 @@ if TYPE_CHECKING:
     from tcopt.design import DesignResult
     from tcopt.menu import Menu
 
-__all__ = ["designs_csv", "menu_csv", "sweep_csv"]
+__all__ = ["csv_table", "designs_csv", "menu_csv", "sweep_csv"]
 
 
-def _table(heading: Sequence[str], rows: Iterable[Sequence[object]]) -> str:
+def csv_table(heading: Sequence[str], rows: Iterable[Sequence[object]]) -> str:
+    """Return rows under a heading; None is an empty cell."""
     text = StringIO()
     writer = csv.writer(text, lineterminator="\n")
     writer.writerow(heading)
@@ -42,7 +43,7 @@ def sweep_csv(result: CheckResult) -> str:
     columns |= {f"{cause} [ppm/K]": 1e6 * share for cause, share in causes.items()}
     columns["all causes [ppm/K]"] = 1e6 * np.sum(list(causes.values()), axis=0)
     rows = zip(*(column.tolist() for column in columns.values()), strict=True)
-    return _table(list(columns), rows)
+    return csv_table(list(columns), rows)
 
 
 def designs_csv(result: DesignResult) -> str:
@@ -79,7 +80,7 @@ def designs_csv(result: DesignResult) -> str:
                 mirror and mirror.feed_resistance,
             ]
         )
-    return _table(heading, rows)
+    return csv_table(heading, rows)
 
 
 def menu_csv(found: Menu) -> str:
@@ -104,4 +105,4 @@ def menu_csv(found: Menu) -> str:
         ]
         for entry in found.entries
     ]
-    return _table(heading, rows)
+    return csv_table(heading, rows)

@@ -18,7 +18,10 @@ if TYPE_CHECKING:
     from tcopt.menu import Menu
     from tcopt.study import Study
 
-__all__ = ["check_document", "design_document", "json_text", "menu_document"]
+__all__ = [
+    "Document", "check_document", "choices_document", "design_document", "json_text",
+    "limit_document", "menu_document", "mix_document", "study_heading",
+]  # fmt: skip
 
 Document = dict[str, Any]
 
@@ -42,7 +45,7 @@ def check_document(result: CheckResult) -> Document:
     """Return what `check` found; the sensitivities stand in the order of ``budget``."""
     found = result.assessment
     return {
-        **_study(result.study),
+        **study_heading(result.study),
         "temperature_K": result.temperature.tolist(),
         "current_A": result.current.tolist(),
         "target_A": result.target.tolist(),
@@ -66,7 +69,7 @@ def check_document(result: CheckResult) -> Document:
 def design_document(result: DesignResult) -> Document:
     """Return what `design` found, best first; the warnings are those for the first."""
     return {
-        **_study(result.study),
+        **study_heading(result.study),
         "designs": [
             _figures(found)
             | {
@@ -131,7 +134,8 @@ def _range(low: float, high: float, reference: float) -> Document:
     return {"low_K": low, "high_K": high, "reference_K": reference}
 
 
-def _study(study: Study) -> Document:
+def study_heading(study: Study) -> Document:
+    """Return what every document of a study begins with."""
     over = study.range
     return {
         "title": study.title,
@@ -143,23 +147,25 @@ def _study(study: Study) -> Document:
 def _figures(found: Assessment) -> Document:
     operation = found.operation
     return {
-        "resistors": {slot: _mix(mix) for slot, mix in operation.mixes.items()},
-        **_choices(operation),
+        "resistors": {slot: mix_document(mix) for slot, mix in operation.mixes.items()},
+        **choices_document(operation),
         "drift": _drift_with_extremes(found.drift, "current_A"),
         "residual_drift": _drift_with_extremes(found.residual_drift, "ratio"),
-        "limit": found.limit and _limit(found.limit),
+        "limit": found.limit and limit_document(found.limit),
         "total_resistance_ohm": sum(mix.total_value for mix in operation.mixes.values()),
     }
 
 
-def _mix(mix: Mix) -> Document:
+def mix_document(mix: Mix) -> Document:
+    """Return a mix: its join and its parts."""
     return {
         "join": mix.join,
         "parts": [{"material": p.material.name, "value_ohm": p.value} for p in mix.parts],
     }
 
 
-def _choices(operation: Operation) -> Document:
+def choices_document(operation: Operation) -> Document:
+    """Return the settled choices of a design; null where the circuit has none."""
     takes = operation.study.circuit.circuit.choices
     choices = operation.choices
     return {
@@ -185,7 +191,8 @@ def _drift(drift: Drift) -> Document:
     }
 
 
-def _limit(limit: Verdict) -> Document:
+def limit_document(limit: Verdict) -> Document:
+    """Return a verdict; value and bound in the unit of the figure's name."""
     return {
         "met": limit.met,
         "figure": limit.figure,

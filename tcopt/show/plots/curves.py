@@ -70,9 +70,9 @@ def current_picture(found: Assessment) -> Figure:
         zorder=2,
     )
     axes.plot(celsius, scale * current, color=INK, linewidth=1.6, label="current", zorder=3)
-    low, high = axes.get_ylim()
+    low, high = (scale * float(end([current, target])) for end in (np.min, np.max))
     middle, least = (low + high) / 2, _SMALLEST_SWING * scale * float(np.abs(current).max())
-    half = max(high - low, least) / 2
+    half = max(1.1 * (high - low), least) / 2
     axes.set_ylim(middle - half, middle + half)
     axes.set_ylabel(f"Output current [{unit}]")
     axes.ticklabel_format(axis="y", useOffset=False)

@@ -2,13 +2,11 @@
 
 from __future__ import annotations
 
-import warnings
 from io import BytesIO
 
-import matplotlib as mpl
 from matplotlib.figure import Figure
 
-from tcopt.show.plots.style import settings
+from tcopt.show.plots.style import house
 
 __all__ = ["encoded"]
 
@@ -21,9 +19,7 @@ _METADATA: dict[str, dict[str, str | None]] = {
 def encoded(figure: Figure) -> dict[str, bytes]:
     """Return a figure as an SVG and as a PNG file, by 'svg' and 'png'."""
     files: dict[str, bytes] = {}
-    with mpl.rc_context(settings()), warnings.catch_warnings():
-        # a title may be in a script that the font lacks; the picture is still of use
-        warnings.filterwarnings("ignore", message="Glyph .* missing from font")
+    with house():
         for kind, metadata in _METADATA.items():
             file = BytesIO()
             figure.savefig(file, format=kind, metadata=metadata)

@@ -5,12 +5,13 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from math import cos, hypot, pi, sin
+from typing import NamedTuple
 
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.patheffects import withStroke
-from matplotlib.transforms import Bbox
 
+from tcopt.arrays import Array
 from tcopt.show.plots.style import GREY, INK, SMALL
 
 __all__ = ["Label", "place"]
@@ -35,9 +36,42 @@ class Label:
     radius: float = 4.0
 
 
-@dataclass(frozen=True, slots=True)
-class _Spot:
-    box: Bbox
+class _Box(NamedTuple):
+    """A rectangle in pixels; matplotlib's own is ten times slower, and thousands are tried."""
+
+    x0: float
+    y0: float
+    x1: float
+    y1: float
+
+    @classmethod
+    def about(cls, x: float, y: float, width: float, height: float) -> _Box:
+        return cls(x - width / 2, y - height / 2, x + width / 2, y + height / 2)
+
+    @property
+    def middle(self) -> tuple[float, float]:
+        return (self.x0 + self.x1) / 2, (self.y0 + self.y1) / 2
+
+    def padded(self, by: float) -> _Box:
+        return _Box(self.x0 - by, self.y0 - by, self.x1 + by, self.y1 + by)
+
+    def overlaps(self, other: _Box) -> bool:
+        return (
+            self.x0 < other.x1 and other.x0 < self.x1 and self.y0 < other.y1 and other.y0 < self.y1
+        )
+
+    def inside(self, frame: _Box) -> bool:
+        return (
+            self.x0 >= frame.x0 and self.x1 <= frame.x1 and self.y0 >= frame.y0
+            and self.y1 <= frame.y1
+        )  # fmt: skip
+
+    def distance(self, x: float, y: float) -> float:
+        return hypot(max(self.x0 - x, 0.0, x - self.x1), max(self.y0 - y, 0.0, y - self.y1))
+
+
+class _Spot(NamedTuple):
+    box: _Box
     leader: Segment
     cost: float
 
@@ -57,13 +91,13 @@ def place(
     figure.set_layout_engine("none")
     pixels = figure.dpi / 72
     to_pixels = axes.transData.transform
-    points = [to_pixels((label.x, label.y)) for label in labels]
+    points = [_pair(to_pixels((label.x, label.y))) for label in labels]
     marks = [
-        Bbox.from_extents(x - r, y - r, x + r, y + r)
+        _Box.about(float(x), float(y), 2 * r, 2 * r)
         for (x, y), r in zip(points, (label.radius * pixels for label in labels), strict=True)
     ]
-    obstacles = [(tuple(to_pixels(a)), tuple(to_pixels(b))) for a, b in lines]
-    frame = axes.get_window_extent().padded(-3 * pixels)
+    obstacles = [(_pair(to_pixels(a)), _pair(to_pixels(b))) for a, b in lines]
+    frame = _Box(*map(float, axes.get_window_extent().padded(-3 * pixels).extents))
     placed: list[_Spot] = []
     for label, (x, y) in zip(labels, points, strict=True):
         text = axes.text(
@@ -81,7 +115,7 @@ def place(
         box = spot.box
         if any(_crosses(a, b, box) for a, b in obstacles):
             text.set_path_effects([withStroke(linewidth=2.5, foreground="white", alpha=0.85)])
-        centre = axes.transData.inverted().transform(_middle(box))
+        centre = axes.transData.inverted().transform(box.middle)
         text.set_position((float(centre[0]), float(centre[1])))
         (x0, y0), (x1, y1) = spot.leader
         length, start = hypot(x1 - x0, y1 - y0), label.radius * pixels
@@ -102,9 +136,9 @@ def _spots(
     radius: float,
     pixels: float,
     placed: Sequence[_Spot],
-    marks: Sequence[Bbox],
+    marks: Sequence[_Box],
     lines: Sequence[Segment],
-    frame: Bbox,
+    frame: _Box,
 ) -> list[_Spot]:
     found = []
     for distance in _DISTANCES:
@@ -114,19 +148,17 @@ def _spots(
             # the box touches the circle of this reach from outside
             cx = x + dx * (reach + width / 2) if abs(dx) > 0.3 else x + dx * (reach + width)
             cy = y + dy * (reach + height / 2)
-            box = Bbox.from_extents(
-                cx - width / 2, cy - height / 2, cx + width / 2, cy + height / 2
-            )
+            box = _Box.about(cx, cy, width, height)
             end = (min(max(x, box.x0), box.x1), min(max(y, box.y0), box.y1))
             leader = ((x, y), end)
             cost = distance + 0.15 * rank
-            cost += 1e6 * _outside(box, frame)
+            cost += 0 if box.inside(frame) else 1e6
             wide = box.padded(1.5 * pixels)
             cost += sum(1e4 for other in placed if wide.overlaps(other.box))
             cost += sum(3e3 for mark in marks if wide.overlaps(mark))
             cost += sum(60 for a, b in lines if _crosses(a, b, wide))
-            own = _distance(box, x, y)
-            cost += sum(25 for m in marks if _distance(box, *_middle(m)) < 1.4 * own)
+            own = box.distance(x, y)
+            cost += sum(25 for m in marks if box.distance(*m.middle) < 1.4 * own)
             long = distance > _NEAR
             cost += sum(4e2 for other in placed if long and _crosses(*leader, other.box))
             cost += sum(4e2 for other in placed if _crosses(*other.leader, wide))
@@ -134,21 +166,11 @@ def _spots(
     return found
 
 
-def _middle(box: Bbox) -> tuple[float, float]:
-    return (box.x0 + box.x1) / 2, (box.y0 + box.y1) / 2
+def _pair(point: Array) -> tuple[float, float]:
+    return float(point[0]), float(point[1])
 
 
-def _distance(box: Bbox, x: float, y: float) -> float:
-    dx = max(box.x0 - x, 0.0, x - box.x1)
-    dy = max(box.y0 - y, 0.0, y - box.y1)
-    return hypot(dx, dy)
-
-
-def _outside(box: Bbox, frame: Bbox) -> bool:
-    return bool(box.x0 < frame.x0 or box.x1 > frame.x1 or box.y0 < frame.y0 or box.y1 > frame.y1)
-
-
-def _crosses(a: tuple[float, float], b: tuple[float, float], box: Bbox) -> bool:
+def _crosses(a: tuple[float, float], b: tuple[float, float], box: _Box) -> bool:
     """Say whether a straight piece passes through a box (Liang and Barsky's clipping)."""
     low, high = 0.0, 1.0
     for start, end, least, most in ((a[0], b[0], box.x0, box.x1), (a[1], b[1], box.y0, box.y1)):

@@ -9,7 +9,9 @@ from __future__ import annotations
 
 import math
 import re
-from collections.abc import Callable
+import warnings
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from functools import wraps
 from typing import Any, ParamSpec
 
@@ -20,7 +22,7 @@ from matplotlib.figure import Figure
 
 __all__ = [
     "BLUE", "GREEN", "GREY", "INK", "ORANGE", "PALE", "SKY", "SMALL", "VERMILLION",
-    "drawn", "new_figure", "prefixed", "pretty", "settings", "temperature_axis", "with_title",
+    "drawn", "house", "new_figure", "prefixed", "pretty", "temperature_axis", "with_title",
 ]  # fmt: skip
 
 INK, GREY, PALE = "#1a1a1a", "#767676", "#e4e9ee"
@@ -62,10 +64,15 @@ _SETTINGS = {
 P = ParamSpec("P")
 
 
-def settings() -> Any:
-    """Return the settings of the house by key, whatever the user's matplotlib is set to."""
+@contextmanager
+def house() -> Iterator[None]:
+    """Draw in the settings of the house, whatever the user's own matplotlib is set to."""
     usual = {key: mpl.rcParamsDefault[key] for key in mpl.rcParamsDefault if key != "backend"}
-    return usual | _SETTINGS
+    settings: Any = usual | _SETTINGS
+    with mpl.rc_context(settings), warnings.catch_warnings():
+        # a title may be in a script that the font lacks; the picture is still of use
+        warnings.filterwarnings("ignore", message="Glyph .* missing from font")
+        yield
 
 
 def drawn(function: Callable[P, Figure]) -> Callable[P, Figure]:
@@ -73,7 +80,7 @@ def drawn(function: Callable[P, Figure]) -> Callable[P, Figure]:
 
     @wraps(function)
     def inside(*args: P.args, **kwargs: P.kwargs) -> Figure:
-        with mpl.rc_context(settings()):
+        with house():
             return function(*args, **kwargs)
 
     return inside
