@@ -190,10 +190,10 @@ class _Builder:
         """Add the errors of the insertions of a trim."""
         trim = self.operation.study.trim
         for index, insertion in enumerate(trim.insertions if trim else ()):
-            at = f"at the trim at {format_quantity(insertion.temperature, 'K')}"
+            at = f"trim at {format_quantity(insertion.temperature, 'K')}"
             for figure, error, name in (
-                ("measured", insertion.measurement_error, f"measurement of the current {at}"),
-                ("believed", insertion.temperature_error, f"temperature of the part {at}"),
+                ("measured", insertion.measurement_error, f"{at}: measurement"),
+                ("believed", insertion.temperature_error, f"{at}: temperature"),
             ):
                 lacking = "no error is given"
                 self._load((figure, str(index)), error, name, TEST, lacking=lacking)

@@ -5,8 +5,9 @@ the variate, over its whole variance: the correlation ratio (first-order index o
 Sobol), from the very parts that were drawn; see Plischke, Borgonovo, Smith, "Global
 sensitivity measures from given data", Eur. J. Oper. Res. 226 (2013). It needs no
 law to be linear: a box figure grows to either side of a matched slope. The straight
-part is taken whole, the rest slice by slice; what scatter within slices would feign
-is taken off (Kelley's epsilon squared, 1935, memory).
+part is taken whole, the rest slice by slice. What scatter within slices would feign
+with independent parts is taken off, as in the adjusted coefficient of determination;
+a Sobol sequence fills each slice evenly in the other variates, so there it is not.
 """
 
 from __future__ import annotations
@@ -26,7 +27,7 @@ __all__ = ["FEWEST", "Cause", "causes_of"]
 
 FEWEST = 256
 """Parts below which no causes are told apart."""
-_PARTS_PER_SLICE = 64
+_PARTS_PER_SLICE = 256
 
 
 @dataclass(frozen=True, slots=True)
@@ -38,7 +39,7 @@ class Cause:
 
 
 def causes_of(
-    sums: Sums, figures: Array, variates: Sequence[Variate]
+    sums: Sums, figures: Array, variates: Sequence[Variate], *, independent: bool
 ) -> tuple[dict[str, tuple[Cause, ...]], ...]:
     """Return the causes of each figure, largest first, for each stage; () with too few parts.
 
@@ -49,6 +50,7 @@ def causes_of(
     sums : by variate and slice, of the solved parts
     figures : of all parts, shape (stages, parts, figures)
     variates : in the order of the sums
+    independent : whether the parts are, or are spread more evenly than that
     """
     solved = figures[:, np.isfinite(figures).all(axis=(0, 2))]
     parts = solved.shape[1]
@@ -70,7 +72,9 @@ def causes_of(
     whole = solved.var(axis=1)[:, :, None]
     with np.errstate(divide="ignore", invalid="ignore"):
         ratio = np.where(whole > 0, between / whole, 0.0)
-    share = np.clip(1 - (1 - ratio) * (parts - 1) / (parts - slices), 0, 1)
+    if independent:
+        ratio = 1 - (1 - ratio) * (parts - 1) / (parts - slices)
+    share = np.clip(ratio, 0, 1)
     return tuple(
         {
             name: tuple(Cause(variates[k], float(row[k])) for k in np.argsort(-row, kind="stable"))

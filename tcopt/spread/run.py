@@ -19,6 +19,7 @@ from tcopt.spread.engine import Sample, draw
 from tcopt.spread.figures import FIGURES
 from tcopt.spread.plan import Plan
 from tcopt.spread.result import LEVELS, Fan, SpreadResult, Stage, TrimEffect
+from tcopt.spread.sample import SOBOL
 from tcopt.spread.traps import warnings_for
 from tcopt.spread.trim import Flags, output_of, require_reach
 from tcopt.spread.variation import TEST
@@ -88,7 +89,9 @@ def spread_of(
         _within(stage[:, FIGURES.index(judged)], study.spread.wanted_yield)
         for stage in sample.figures
     )
-    causes = causes_of(sample.sums, sample.figures, variates)
+    causes = causes_of(
+        sample.sums, sample.figures, variates, independent=study.spread.sampling != SOBOL
+    )
     stages = tuple(
         _stage(plan, sample, solved, index, causes[index] if causes else {}, judged)
         for index in range(plan.stages)
