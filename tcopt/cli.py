@@ -250,3 +250,52 @@ def check(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
 
     _answer(lambda: check_document(result), lambda: check_report(result), as_json, out)
     _exit(result.assessment.limit)
+
+
+@app.command()
+def spread(
+    study: StudyFile,
+    samples: Annotated[
+        int | None, typer.Option(metavar="COUNT", help="Parts to draw, instead of the study's.")
+    ] = None,
+    seed: Annotated[
+        int | None, typer.Option(metavar="NUMBER", help="Seed, instead of the study's.")
+    ] = None,
+    workers: Annotated[
+        int | None,
+        typer.Option(metavar="COUNT", help="Processes of this machine that share the work."),
+    ] = None,
+    scheduler: Annotated[
+        str | None,
+        typer.Option(metavar="ADDRESS", help="Or a Dask scheduler whose workers share it."),
+    ] = None,
+    as_json: Json = False,
+    out: Out = None,
+) -> None:
+    """Draw parts of a finished design and say what silicon makes of it.
+
+    Quantiles, yield, causes and corners, before and after the study's trim. The same seed gives
+    the same result whoever shares the work. The limit is met if the wanted share of the parts
+    (yield in the study's table [spread], 99.7 % without) stays within it, after trim if there
+    is one. Ctrl-C keeps what is finished, says that it is partial, and exits with 130.
+    """
+    from tcopt.show.progress import progress  # noqa: PLC0415
+    from tcopt.spread import run  # noqa: PLC0415
+    from tcopt.spread.crews import crew_for  # noqa: PLC0415
+    from tcopt.study import load_study  # noqa: PLC0415
+
+    question = run.asked(load_study(study), samples=samples, seed=seed)
+    crew = crew_for(workers, scheduler)
+    with progress("Parts") as report:
+        result = run.spread(question, crew, report)
+    if out is not None:
+        from tcopt.show.folder import spread_files, write_folder  # noqa: PLC0415
+
+        write_folder(out, spread_files(result), read=study)
+    from tcopt.show.spread_json import spread_document  # noqa: PLC0415
+    from tcopt.show.tables.spread import spread_report  # noqa: PLC0415
+
+    _answer(lambda: spread_document(result), lambda: spread_report(result), as_json, out)
+    if result.partial:
+        raise typer.Exit(INTERRUPTED)
+    _exit(result.limit)

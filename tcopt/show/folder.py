@@ -22,8 +22,9 @@ if TYPE_CHECKING:
     from tcopt.check import CheckResult
     from tcopt.design import DesignResult
     from tcopt.menu import Menu
+    from tcopt.spread.result import SpreadResult
 
-__all__ = ["Files", "check_files", "design_files", "menu_files", "write_folder"]
+__all__ = ["Files", "check_files", "design_files", "menu_files", "spread_files", "write_folder"]
 
 Files = dict[str, str | bytes]
 """Content by file name."""
@@ -64,6 +65,30 @@ def menu_files(found: Menu) -> Files:
         "materials.json": json_text(menu_document(found)),
         "materials.csv": menu_csv(found),
         **_encoded({"materials": lambda: menu_map(found)}),
+    }
+
+
+def spread_files(result: SpreadResult) -> Files:
+    """Return the document, the tables and the pictures of `spread`."""
+    from tcopt.show import plots, spread_csv  # noqa: PLC0415  matplotlib is slow to import
+    from tcopt.show.spread_json import spread_document  # noqa: PLC0415
+
+    pictures = {
+        "fan": partial(plots.fan_picture, result),
+        "histograms": partial(plots.histogram_picture, result),
+    }
+    if result.stages[-1].causes:
+        pictures["causes"] = partial(plots.spread_causes_picture, result)
+    if result.stages[-1].trim:
+        pictures["codes"] = partial(plots.codes_picture, result)
+    return {
+        "spread.json": json_text(spread_document(result)),
+        "quantiles.csv": spread_csv.quantiles_csv(result),
+        "causes.csv": spread_csv.causes_csv(result),
+        "corners.csv": spread_csv.corners_csv(result),
+        "fan.csv": spread_csv.fan_csv(result),
+        "parts.csv": spread_csv.parts_csv(result),
+        **_encoded(pictures),
     }
 
 

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import multiprocessing
 import os
+import re
 import signal
 import sys
 from collections.abc import Callable
@@ -27,6 +28,7 @@ __all__ = ["ANSWER_WITHIN", "Crew", "alone", "cluster", "crew_for", "processes"]
 
 ANSWER_WITHIN = 5.0
 """Seconds within which a scheduler has to answer."""
+_ADDRESS = re.compile(r"(tcp|tls|ws|wss)://[^\s/:]+:[0-9]{1,5}|tcp://\[[0-9a-fA-F:]+\]:[0-9]{1,5}")
 _PER_PROCESSOR = 2
 """Worker processes per processor above which more cannot help."""
 
@@ -109,6 +111,12 @@ def cluster(address: str) -> Crew:
     InputError
         If Dask is not installed, or no scheduler answers at the address.
     """
+    unusable = InputError(
+        f"scheduler: found none that answers within {ANSWER_WITHIN:g} s at {shown(address)}; "
+        "accepted: the address of a running Dask scheduler, such as tcp://127.0.0.1:8786"
+    )
+    if not _ADDRESS.fullmatch(address):
+        raise unusable
     try:
         from distributed import Client  # noqa: PLC0415  an optional extra
         from distributed.scheduler import KilledWorker  # noqa: PLC0415
@@ -121,12 +129,8 @@ def cluster(address: str) -> Crew:
     try:
         with connected() as client:
             width = max(1, sum(client.nthreads().values()))
-    except (OSError, ValueError, TypeError) as error:
-        raise InputError(
-            f"scheduler: found none that answers within {ANSWER_WITHIN:g} s at {shown(address)} "
-            f"({type(error).__name__}); accepted: the address of a running Dask scheduler, such "
-            "as tcp://127.0.0.1:8786"
-        ) from None
+    except OSError:
+        raise unusable from None
 
     @contextmanager
     def opened() -> Iterator[Executor]:

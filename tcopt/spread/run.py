@@ -28,12 +28,35 @@ from tcopt.spread.yields import yield_of
 if TYPE_CHECKING:
     from tcopt.study import Insertion, Study
 
-__all__ = ["STAGES", "spread", "spread_of"]
+__all__ = ["STAGES", "asked", "spread", "spread_of"]
 
 STAGES = ("untrimmed", "one insertion", "two insertions")
 _FIGURE_OF_LIMIT = {"box": "residual_box", "deviation": "deviation"}
 _KEY = {"residual_box": "box_ppm_per_K", "deviation": "deviation_ppm"}
 _LAST_SLICES = 41
+
+
+def asked(study: Study, *, samples: int | None = None, seed: int | None = None) -> Study:
+    """Return a study with other samples or another seed, where they are given.
+
+    Raises
+    ------
+    InputError
+        If they are none that a study may have.
+    """
+    from pydantic import ValidationError  # noqa: PLC0415
+
+    from tcopt.study import Spread  # noqa: PLC0415  this layer lies below the gate
+    from tcopt.study.gate import refused_input  # noqa: PLC0415
+
+    wanted = {"samples": samples, "seed": seed}
+    changes = {name: value for name, value in wanted.items() if value is not None}
+    given = {name: getattr(study.spread, name) for name in study.spread.model_fields_set}
+    try:
+        made = Spread.model_validate({**given, **changes})
+    except ValidationError as error:
+        raise refused_input("command line", error) from None
+    return study.model_copy(update={"spread": made})
 
 
 def spread(

@@ -37,7 +37,7 @@ class Spread(Model):
         what the study states, relative to it [1]
     """
 
-    samples: Annotated[int, whole(1, 10**8)] = 16384
+    samples: Annotated[int, whole(1, 10**7)] = 16384
     seed: Annotated[int, whole(0, 2**63 - 1)] = 1
     sampling: Annotated[Literal["sobol", "plain"], words("sobol", "plain")] = "sobol"
     sigma: Annotated[float, quantity("1", "a pure number such as 3", above=0, below=10)] = 3.0
