@@ -9,7 +9,7 @@ is told by the validation context, which carries what names are looked up in.
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from typing import Any
 
 from pydantic import BaseModel, ConfigDict, ValidationError, ValidationInfo, model_validator
@@ -76,7 +76,7 @@ _SHAPES = {
 }
 
 
-def _one(error: Any, tags: frozenset[str]) -> str:
+def _one(error: Any, tags: frozenset[str], renamed: Callable[[str], str]) -> str:
     context = error.get("ctx", {})
     path = ""
     for part in error["loc"]:
@@ -91,18 +91,21 @@ def _one(error: Any, tags: frozenset[str]) -> str:
     else:
         found = shown(error["input"])
         accepted = _SHAPES.get(error["type"], error["msg"])
-    where = f"{path.lstrip('.')}: " if path else ""
+    where = f"{renamed(path.lstrip('.'))}: " if path else ""
     return f"{where}found {found}; accepted: {accepted}"
 
 
 def refused_input(
-    where: str, error: ValidationError, tags: frozenset[str] = frozenset()
+    where: str,
+    error: ValidationError,
+    tags: frozenset[str] = frozenset(),
+    renamed: Callable[[str], str] = str,
 ) -> InputError:
     """Return the project's error for pydantic's: the first problem, and how many more.
 
     ``tags`` are the names by which pydantic tells union members apart; they
-    stand in no file.
+    stand in no file. ``renamed`` turns a key into how it stands in the file.
     """
     problems = error.errors(include_url=False)
     more = f" (and {len(problems) - 1} more)" if len(problems) > 1 else ""
-    return InputError(f"{where}: {_one(problems[0], tags)}{more}")
+    return InputError(f"{where}: {_one(problems[0], tags, renamed)}{more}")
