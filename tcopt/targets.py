@@ -9,7 +9,9 @@ from typing import TYPE_CHECKING, TypeVar
 import numpy as np
 
 from tcopt.arrays import Array
-from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope
+from tcopt.laws import generated
+from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope, thermal_voltage
+from tcopt.laws.roots import inversion_bend, inversion_root
 
 if TYPE_CHECKING:
     from tcopt.study import Target
@@ -42,7 +44,10 @@ def target_current(target: Target, reference: float) -> TargetCurrent:
     ``over material``: I_0 m(T_0)/m(T), which holds the drop across a resistor of
     that material. ``curve``: through the points of a table by monotone cubic
     pieces (Fritsch and Carlson 1980), so that no overshoot is invented between
-    them.
+    them. ``bipolar transconductance``: I_0 T/T_0, since g_m = I/V_T. ``mos
+    transconductance``: what holds ``g_m = I G(IC)/(n V_T)`` of a MOS transistor, its
+    mobility and V_T moving; like T in weak inversion, like 1/mobility in strong. ``slew
+    into capacitor``: I_0 (1 + a (T - T_0) + b (T - T_0)^2), the capacitor's law.
 
     Parameters
     ----------
@@ -60,6 +65,56 @@ def _flat(target: Target, reference: float) -> TargetCurrent:  # noqa: ARG001
 def _ptat(target: Target, reference: float) -> TargetCurrent:
     I_0 = _present(target.current)
     return TargetCurrent(lambda T: I_0 * T / reference, lambda T: 1 / T)
+
+
+def _bipolar_transconductance(target: Target, reference: float) -> TargetCurrent:
+    if target.current is not None:
+        return _ptat(target, reference)
+    I_0 = _present(target.transconductance) * float(thermal_voltage(reference))
+    return TargetCurrent(lambda T: I_0 * T / reference, lambda T: 1 / T)
+
+
+def _mos_transconductance(target: Target, reference: float) -> TargetCurrent:
+    """Hold ``I_spec s (1 - exp(-s))/(n V_T)``, of which ``IC = s^2`` and ``I = W I_spec s^2``.
+
+    With ``I_spec ~ T^(2 - m)`` that is ``s (1 - exp(-s)) ~ T^(m - 1)``.
+    """
+    transistor = target.transistor
+    if transistor is None or transistor.kind != "mos":
+        raise AssertionError("the gate for input lets no such target through")
+    m = transistor.mobility_exponent
+    s_0 = _present(target.inversion_coefficient) ** 0.5
+    share = float(generated.transconductance_share(s_0))
+    I_0 = target.current
+    if I_0 is None:
+        n_V_T = transistor.slope_factor * float(thermal_voltage(reference))
+        I_0 = _present(target.transconductance) * n_V_T / share
+
+    def root(T: Array) -> Array:
+        return np.asarray(inversion_root(s_0**2 * share * (T / reference) ** (m - 1)))
+
+    def slope(T: Array) -> Array:
+        return np.asarray((2 * (m - 1) / inversion_bend(root(T)) + 2 - m) / T)
+
+    def current(T: Array) -> Array:
+        grown = generated.specific_current_ratio(T, reference, m)
+        return np.asarray(I_0 * (root(T) / s_0) ** 2 * grown)
+
+    return TargetCurrent(current, slope)
+
+
+def _slew(target: Target, reference: float) -> TargetCurrent:
+    I_0 = target.current
+    if I_0 is None:
+        I_0 = _present(target.slew_rate) * _present(target.capacitance)
+    a, b = target.capacitor_tc1 or 0.0, target.capacitor_tc2 or 0.0
+
+    def ratio(T: Array) -> Array:
+        return 1 + a * (T - reference) + b * (T - reference) ** 2
+
+    return TargetCurrent(
+        lambda T: I_0 * ratio(T), lambda T: (a + 2 * b * (T - reference)) / ratio(T)
+    )
 
 
 def _slope(target: Target, reference: float) -> TargetCurrent:
@@ -98,4 +153,7 @@ _SHAPES: dict[str, Callable[[Target, float], TargetCurrent]] = {
     "slope": _slope,
     "over material": _over_material,
     "curve": _curve,
+    "bipolar transconductance": _bipolar_transconductance,
+    "mos transconductance": _mos_transconductance,
+    "slew into capacitor": _slew,
 }

@@ -94,6 +94,21 @@ def laws_module() -> str:
             "Return V_GS [V] without Early effect, source and bulk together",
         ),
     )
+    IC, s = sp.symbols("inversion_coefficient s", positive=True)
+    table += (
+        (
+            "saturation_voltage",
+            mosfet.saturation_voltage(IC, V_T),
+            "inversion_coefficient V_T",
+            "Return V_DSsat [V]",
+        ),
+        (
+            "transconductance_share",
+            mosfet.transconductance_share(s),
+            "s",
+            "Return g_m n V_T/I_D for s, the root of the inversion coefficient",
+        ),
+    )
     functions = [
         function(name, f"{summary}.", arguments.split(), [f"return {text(expression)}"])
         for name, expression, arguments, summary in table

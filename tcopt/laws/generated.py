@@ -5,7 +5,7 @@ Written by ``python -m tcopt.circuits.generate`` from the statement in sympy; no
 
 from typing import Any
 
-from numpy import log, sqrt
+from numpy import expm1, log, sqrt
 
 from tcopt.laws.roots import log_expm1
 
@@ -93,3 +93,13 @@ def base_emitter_voltage(current: Any, area: Any, V_T: Any, log_I_S: Any) -> Any
 def gate_source_voltage(current: Any, area: Any, V_T: Any, V_TH: Any, n: Any, I_spec: Any) -> Any:
     """Return V_GS [V] without Early effect, source and bulk together."""
     return 2*V_T*n*log_expm1(sqrt(current)/(sqrt(I_spec)*sqrt(area))) + V_TH
+
+
+def saturation_voltage(inversion_coefficient: Any, V_T: Any) -> Any:
+    """Return V_DSsat [V]."""
+    return V_T*(2*sqrt(inversion_coefficient + 1/4) + 3)
+
+
+def transconductance_share(s: Any) -> Any:
+    """Return g_m n V_T/I_D for s, the root of the inversion coefficient."""
+    return -expm1(-s)/s

@@ -15,7 +15,10 @@ from typing import Any
 
 import sympy as sp
 
-__all__ = ["LogExpm1", "gate_voltage", "specific_current_ratio", "threshold_voltage"]
+__all__ = [
+    "LogExpm1", "gate_voltage", "saturation_voltage", "specific_current_ratio",
+    "threshold_voltage", "transconductance_share",
+]  # fmt: skip
 
 
 class LogExpm1(sp.Function):  # type: ignore[misc]
@@ -52,6 +55,28 @@ def specific_current_ratio(T: sp.Expr, T_0: sp.Expr, m: sp.Expr) -> sp.Expr:
 def threshold_voltage(T: sp.Expr, T_0: sp.Expr, V_TH0: sp.Expr, a: sp.Expr) -> sp.Expr:
     """Return ``V_TH0 - a (T - T_0)`` [V], a in V/K."""
     return V_TH0 - a * (T - T_0)
+
+
+def saturation_voltage(inversion_coefficient: sp.Expr, V_T: sp.Expr) -> sp.Expr:
+    """Return the drain-source voltage [V] from which on the drain current hardly rises.
+
+    ``V_T (2 sqrt(IC + 1/4) + 3)``: about four thermal voltages in weak inversion, the
+    overdrive over n in strong; Enz, Krummenacher, Vittoz (1995).
+
+    Parameters
+    ----------
+    inversion_coefficient : ``IC = I_D/(W I_spec)`` [1]
+    V_T : thermal voltage [V]
+    """
+    return V_T * (2 * sp.sqrt(inversion_coefficient + sp.Rational(1, 4)) + 3)
+
+
+def transconductance_share(s: sp.Expr) -> sp.Expr:
+    """Return ``g_m n V_T/I_D = (1 - exp(-s))/s``, s the root of the inversion coefficient.
+
+    From the law by differentiation; 1 in weak inversion, 1/s in strong.
+    """
+    return -Expm1(-s) / s
 
 
 def gate_voltage(

@@ -1,4 +1,4 @@
-"""Two functions that scipy has not, or not fast: a root of ``y - ln y = u``, and a logarithm."""
+"""Functions that scipy has not, or not fast: two roots, and a logarithm."""
 
 from __future__ import annotations
 
@@ -6,9 +6,10 @@ from typing import Any
 
 import numpy as np
 
-__all__ = ["log_expm1", "upper_root"]
+__all__ = ["inversion_bend", "inversion_root", "log_expm1", "upper_root"]
 
 _STEPS = 6
+_INVERSION_STEPS = 8
 
 
 def upper_root(u: Any) -> Any:
@@ -34,6 +35,37 @@ def upper_root(u: Any) -> Any:
             step = (y - np.log(y) - u) * y / (y - 1)
             y = np.where(u > 1, y - np.where(np.isnan(step), 0, step), y)
     return y
+
+
+def inversion_root(c: Any) -> Any:
+    """Return the root s of ``s (1 - exp(-s)) = c``: what a MOS transistor's g_m asks for.
+
+    ``c = g_m n V_T/I_spec``; s is the root of its inversion coefficient. Newton's method on
+    ``ln s + ln(1 - exp(-s)) = ln c`` in ln s: that is concave, of a slope between 1 and 2, so
+    from a guess below the root it climbs without overshoot.
+
+    Parameters
+    ----------
+    c : above 0, array of any shape [1]
+
+    >>> round(float(inversion_root(1 - 0.36787944117144233)), 12)  # s = 1
+    1.0
+    """
+    log_c = np.log(np.asarray(c, dtype=float))
+    log_s = np.maximum(log_c / 2, log_c)
+    for _ in range(_INVERSION_STEPS):
+        s = np.exp(log_s)
+        log_s = log_s - (log_s + np.log(-np.expm1(-s)) - log_c) / inversion_bend(s)
+    return np.exp(log_s)
+
+
+def inversion_bend(s: Any) -> Any:
+    """Return ``d ln(s (1 - exp(-s)))/d ln s = 1 + s/(exp(s) - 1)``, without overflow.
+
+    >>> float(inversion_bend(1000.0))
+    1.0
+    """
+    return 1 - s * np.exp(-s) / np.expm1(-s)
 
 
 def log_expm1(s: Any) -> Any:

@@ -105,5 +105,9 @@ def target_words(study: Study) -> str:
         "slope": f"slope {format_quantity(target.slope or 0.0, '1/K')}",
         "over material": f"over {target.material.name if target.material else ''}",
         "curve": f"curve of {target.file.name}" if target.file else "curve",
+        "bipolar transconductance": "for constant g_m of a bipolar pair",
+        "mos transconductance": "for constant g_m of a MOS pair at inversion coefficient "
+        f"{target.inversion_coefficient or 0.0:g}",
+        "slew into capacitor": "for constant slew rate at a capacitor",
     }[target.shape]
     return f"{shape}, {format_quantity(study.target_current, 'A')} at T_ref"

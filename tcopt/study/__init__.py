@@ -10,16 +10,15 @@ from tcopt.study.process import Material, Process
 from tcopt.study.question import (
     GRADES,
     FixedSlot,
-    Limit,
     OpenSlot,
     Search,
-    Target,
     TemperatureRange,
 )
 from tcopt.study.spread import OUTPUT_MIRROR, Insertion, Spread, Trim
 from tcopt.study.start import write_first_study
 from tcopt.study.study import Study
 from tcopt.study.transistors import BaseEmitter, MosTransistor, Transistor
+from tcopt.study.target import Limit, Target
 from tcopt.study.write import study_text
 
 __all__ = [

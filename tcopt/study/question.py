@@ -1,18 +1,14 @@
-"""The parts of one question: range, resistors, target, search."""
+"""The parts of one question: range, resistors, search."""
 
 from __future__ import annotations
 
 from collections.abc import Mapping
-from pathlib import Path
 from typing import Annotated, Any, Literal
 
 from pydantic import Discriminator, Field, Tag, ValidationInfo, field_validator, model_validator
 
 from tcopt.study.choices import MaterialName
-from tcopt.study.curve import Curve, first_problem
 from tcopt.study.fields import (
-    Current,
-    Slope,
     Temperature,
     quantity,
     refusal,
@@ -20,14 +16,14 @@ from tcopt.study.fields import (
     without_repeats,
     words,
 )
-from tcopt.study.gate import INTERNAL, Model
+from tcopt.study.gate import Model
 from tcopt.study.part import Part
 from tcopt.study.process import Material
 from tcopt.units import format_quantity, parse, shown
 
 __all__ = [
-    "GRADES", "SLOT_TAGS", "FixedSlot", "Limit", "OpenSlot", "Part", "ResistorSlot", "Search",
-    "Target", "TemperatureRange",
+    "GRADES", "SLOT_TAGS", "FixedSlot", "OpenSlot", "Part", "ResistorSlot", "Search",
+    "TemperatureRange",
 ]  # fmt: skip
 
 _AUTOMOTIVE = {0: 150.0, 1: 125.0, 2: 105.0, 3: 85.0}
@@ -44,15 +40,23 @@ GRADES: dict[str, tuple[float, float]] = {
 _EITHER = f"either from and to, or grade = {', '.join(repr(grade) for grade in GRADES)}"
 _MOST_PARTS = 16
 _MOST_PIECES = 4
+_ThermalResistance = Annotated[
+    float, quantity("K/W", "a thermal resistance such as '150 K/W'", above=0, below=1e9)
+]
 
 
 class TemperatureRange(Model):
-    """The range over which the current is owed, and the temperature at which it is stated [K]."""
+    """The range over which the current is owed, and the temperature at which it is stated [K].
+
+    ``thermal_resistance``: from the junctions, all at one temperature, to the place whose
+    range this is [K/W]; None: they are as warm as that place.
+    """
 
     grade: Annotated[str, words(*GRADES)] | None = None
     low: Temperature = Field(default=None, validation_alias="from", validate_default=True)
     high: Temperature = Field(default=None, validation_alias="to", validate_default=True)
     reference: Temperature = Field(default=parse("27 degC", "K"), validate_default=True)
+    thermal_resistance: _ThermalResistance | None = None
 
     @model_validator(mode="before")
     @classmethod
@@ -88,90 +92,6 @@ class TemperatureRange(Model):
             raise refusal(
                 format_quantity(self.reference, "K"), f"inside the range, {inside}", "reference"
             )
-        return self
-
-
-class Limit(Model):
-    """What the drift must not exceed: 'box' [1/K], or 'deviation' from the target [1]."""
-
-    kind: Literal["box", "deviation"]
-    value: float = Field(gt=0, allow_inf_nan=False)
-
-
-def _limit(value: Any) -> Any:
-    accepted = (
-        "a box drift such as '100 ppm/K', or a deviation such as '0.5 %', above 0 and below 1"
-    )
-    if value is None or isinstance(value, Limit):
-        return value
-    kind: Literal["box", "deviation"] = "deviation"
-    try:
-        number = parse(value, "1")
-    except ValueError:
-        kind = "box"
-        try:
-            number = parse(value, "1/K")
-        except ValueError:
-            raise refusal(shown(value), accepted) from None
-    if not 0 < number < 1:
-        raise refusal(shown(value), accepted)
-    return Limit(kind=kind, value=number)
-
-
-class Target(Model):
-    """What the output current should do.
-
-    Attributes
-    ----------
-    shape : 'flat'; 'ptat': ``I_0 T/T_0``; 'slope': ``I_0 (1 + slope (T - T_0))``;
-        'over material': ``I_0 / m(T)``; 'curve': a table
-    current : I_0, at the study's reference T_0 [A]; None with a curve, which has its own
-    limit : what the drift must not exceed
-    slope : [1/K], with shape 'slope' alone
-    material : with shape 'over material' alone
-    curve, file : temperatures [K] and currents [A], and where they were read, with 'curve' alone
-    """
-
-    shape: Annotated[
-        Literal["flat", "ptat", "slope", "over material", "curve"],
-        words("flat", "ptat", "slope", "over material", "curve"),
-    ]
-    current: Current | None = None
-    limit: Limit | None = None
-    slope: Slope | None = None
-    material: MaterialName | None = None
-    curve: Curve | None = Field(default=None, validation_alias=f"{INTERNAL}curve")
-    file: Path | None = None
-
-    @field_validator("limit", mode="before")
-    @classmethod
-    def _limit_of_either_kind(cls, value: Any) -> Any:
-        return _limit(value)
-
-    @field_validator("curve")
-    @classmethod
-    def _curve_can_be_followed(cls, value: Curve | None) -> Curve | None:
-        problem = first_problem(value) if value is not None else None
-        if problem is not None:
-            raise refusal(problem.found, problem.accepted, f"[{problem.index}]")
-        return value
-
-    @model_validator(mode="after")
-    def _what_the_shape_takes(self) -> Target:
-        belongs = {"slope": "slope", "material": "over material", "curve": "curve"}
-        for field, shape in belongs.items():
-            key = "file" if field == "curve" else field
-            given = getattr(self, field) is not None
-            if given and self.shape != shape:
-                raise refusal(
-                    f"a {key} with shape {self.shape!r}", f"{key} with shape {shape!r} alone", key
-                )
-            if not given and self.shape == shape:
-                raise refusal("nothing", f"the {key} that shape {shape!r} needs", key)
-        if self.shape == "curve" and self.current is not None:
-            raise refusal("a current beside a curve", "the curve alone, which states it", "current")
-        if self.shape != "curve" and self.current is None:
-            raise refusal("nothing", "a current such as '10 uA'", "current")
         return self
 
 

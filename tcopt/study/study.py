@@ -20,10 +20,10 @@ from tcopt.study.question import (
     OpenSlot,
     ResistorSlot,
     Search,
-    Target,
     TemperatureRange,
 )
 from tcopt.study.spread import OUTPUT_MIRROR, Insertion, Spread, Trim
+from tcopt.study.target import Target
 from tcopt.units import format_quantity, shown
 
 __all__ = ["Study"]
@@ -139,6 +139,12 @@ class Study(Model):
             ("circuit.input_tc1", given.input_tc1, given.input_tc2, about),
             ("circuit.reference_tc1", given.reference_tc1, given.reference_tc2, about),
             ("target.slope", self.target.slope or 0.0, 0.0, about),
+            (
+                "target.capacitor_tc1",
+                self.target.capacitor_tc1 or 0.0,
+                self.target.capacitor_tc2 or 0.0,
+                about,
+            ),
         ):
             worst = _where_smallest(tc1, tc2, reference, self.range)
             d = worst - reference

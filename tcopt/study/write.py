@@ -11,10 +11,11 @@ import tomlkit
 from tcopt.errors import InputError
 from tcopt.study.choices import Choice, Span
 from tcopt.study.layout import Layout
-from tcopt.study.question import FixedSlot, Limit, OpenSlot, Search
+from tcopt.study.question import FixedSlot, OpenSlot, Search
 from tcopt.study.spread import Insertion, Spread, Trim
 from tcopt.study.study import Study
 from tcopt.units import exact
+from tcopt.study.target import Limit
 
 __all__ = ["study_text"]
 
@@ -51,7 +52,10 @@ def _range(study: Study) -> dict[str, Any]:
         if over.grade
         else {"from": exact(over.low, "K"), "to": exact(over.high, "K")}
     )
-    return {**ends, "reference": exact(over.reference, "K")}
+    table: dict[str, Any] = {**ends, "reference": exact(over.reference, "K")}
+    if over.thermal_resistance is not None:
+        table["thermal_resistance"] = exact(over.thermal_resistance, "K/W")
+    return table
 
 
 def _circuit(study: Study) -> dict[str, Any]:
@@ -93,12 +97,18 @@ def _target(study: Study, folder: Path) -> dict[str, Any]:
         if target.file is None:
             raise InputError("target.file: found nothing; accepted: a curve read from a file")
         table["file"] = _from(folder, target.file)
-    if target.current is not None:
-        table["current"] = exact(target.current, "A")
-    if target.slope is not None:
-        table["slope"] = exact(target.slope, "1/K")
-    if target.material is not None:
-        table["material"] = target.material.name
+    for key, unit in (
+        ("current", "A"), ("slope", "1/K"), ("inversion_coefficient", "1"),
+        ("transconductance", "S"), ("slew_rate", "V/s"), ("capacitance", "F"),
+        ("capacitor_tc1", "1/K"), ("capacitor_tc2", "1/K^2"),
+    ):  # fmt: skip
+        value: float | None = getattr(target, key)
+        if value is not None:
+            table[key] = _number(value) if unit == "1" else exact(value, unit)
+    for key in ("material", "transistor"):
+        entry = getattr(target, key)
+        if entry is not None:
+            table[key] = entry.name
     if target.limit is not None:
         table["limit"] = _limit(target.limit)
     return table
