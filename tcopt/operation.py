@@ -6,7 +6,7 @@ quantities of a circuit, so every figure that is reported passes through here.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from functools import cached_property
 from typing import TYPE_CHECKING
@@ -86,14 +86,14 @@ class Operation:
     """A study's circuit with one choice of ratios and input, and a mix in each slot.
 
     ``mixes`` may leave out slots that are still open; then only `needed` and
-    `quantities` of the others are to be had. ``other_bases``: base currents [A] against
-    temperature [K] of further outputs that share the input; without it there are none.
+    `quantities` of the others are to be had. ``other_bases``: base currents [A] of
+    further outputs that share the input; without it there are none.
     """
 
     study: Study
     choices: Choices
     mixes: Mapping[str, Mix] = field(default_factory=dict)
-    other_bases: Callable[[Array], Array] | None = None
+    other_bases: DeviceQuantity | None = None
 
     @cached_property
     def circuit(self) -> Numerics:
@@ -115,7 +115,8 @@ class Operation:
             "M": np.asarray(self.choices.mirror_ratio),
         }
         found |= {name: quantity.value(T) for name, quantity in self._device.items()}
-        found["I_others"] = np.asarray(0.0) if self.other_bases is None else self.other_bases(T)
+        others = self.other_bases
+        found["I_others"] = np.asarray(0.0) if others is None else others.value(T)
         d = T - self.study.range.reference
         if self.choices.input_current is not None and made.feed == GIVEN:
             ratio = 1 + made.input_tc1 * d + made.input_tc2 * d**2
@@ -180,6 +181,8 @@ class Operation:
         for name, quantity in self._device.items():
             if quantity.cause:
                 slopes[name, quantity.cause] = quantity.slope(T)
+        if self.other_bases is not None and self.other_bases.cause:
+            slopes["I_others", self.other_bases.cause] = self.other_bases.slope(T)
         for symbol, cause, tc1, tc2 in (
             ("I_given", "input current", made.input_tc1, made.input_tc2),
             ("V_ref", "reference voltage", made.reference_tc1, made.reference_tc2),

@@ -9,13 +9,14 @@ from typing import Any
 import tomlkit
 
 from tcopt.errors import InputError
+from tcopt.study.cascade import CascadeStudy
 from tcopt.study.choices import Choice, Span
 from tcopt.study.layout import Layout
 from tcopt.study.question import FixedSlot, OpenSlot, Search
 from tcopt.study.spread import Insertion, Spread, Trim
 from tcopt.study.study import Study
-from tcopt.units import exact
 from tcopt.study.target import Limit
+from tcopt.units import exact
 
 __all__ = ["study_text"]
 
@@ -203,32 +204,67 @@ def _trim(trim: Trim) -> dict[str, Any]:
     return tables if trim.second is None else {**tables, "second": _insertion(trim.second)}
 
 
-def study_text(study: Study, folder: str | Path) -> str:
+def _output(study: Study, folder: Path) -> dict[str, Any]:
+    """Return what an output has of its own among several."""
+    made = study.circuit
+    table: dict[str, Any] = {"area_ratio": _choice(made.area_ratio, "1")}
+    if made.output_voltage is not None:
+        table["output_voltage"] = exact(made.output_voltage, "V")
+    table["target"] = _target(study, folder)
+    if "output" in study.resistors:
+        table["resistor"] = _slot(study.resistors["output"])
+    return table
+
+
+def _cascade(question: CascadeStudy, folder: Path) -> dict[str, Any]:
+    shared = question.shared
+    circuit = _circuit(shared)
+    for key in ("area_ratio", "output_voltage"):
+        circuit.pop(key, None)
+    slots = {name: _slot(slot) for name, slot in shared.resistors.items() if name != "output"}
+    return {
+        "circuit": circuit,
+        "outputs": {name: _output(study, folder) for name, study in question.outputs.items()},
+        **({"resistors": slots} if slots else {}),
+        "search": _search(shared.search),
+    }
+
+
+def _single(study: Study, folder: Path) -> dict[str, Any]:
+    return {
+        "circuit": _circuit(study),
+        "target": _target(study, folder),
+        "resistors": {name: _slot(slot) for name, slot in study.resistors.items()},
+        "search": _search(study.search),
+        **({"spread": _spread(study.spread)} if study.spread != Spread() else {}),
+        **({"trim": _trim(study.trim)} if study.trim is not None else {}),
+        **({"layout": _layout(study.layout)} if study.layout is not None else {}),
+    }
+
+
+def study_text(study: Study | CascadeStudy, folder: str | Path) -> str:
     """Return the TOML text of a study; read from a file in ``folder`` it gives an equal study.
 
     Parameters
     ----------
-    study : a study whose process (and curve, if any) came from a file
+    study : a study whose process (and curve, if any) came from a file; of one output or of
+        several
     folder : where the text will stand; the process's path is written relative to it
 
     Raises
     ------
     InputError : the process or the curve came from no file, so that no path can name it
     """
-    if study.process.path is None:
+    shared = study.shared if isinstance(study, CascadeStudy) else study
+    if shared.process.path is None:
         raise InputError("process: found no file; accepted: a process read from a file")
     folder = Path(folder)
+    parts = _cascade(study, folder) if isinstance(study, CascadeStudy) else _single(study, folder)
     return tomlkit.dumps(
         {
             "title": study.title,
-            "process": _from(folder, study.process.path),
-            "range": _range(study),
-            "circuit": _circuit(study),
-            "target": _target(study, folder),
-            "resistors": {name: _slot(slot) for name, slot in study.resistors.items()},
-            "search": _search(study.search),
-            **({"spread": _spread(study.spread)} if study.spread != Spread() else {}),
-            **({"trim": _trim(study.trim)} if study.trim is not None else {}),
-            **({"layout": _layout(study.layout)} if study.layout is not None else {}),
+            "process": _from(folder, shared.process.path),
+            "range": _range(shared),
+            **parts,
         }
     )
