@@ -18,7 +18,7 @@ from tcopt.traps import warnings_for
 if TYPE_CHECKING:
     from tcopt.study import Study
 
-__all__ = ["Budget", "CheckResult", "check", "finished_operation"]
+__all__ = ["Budget", "CheckResult", "check", "check_operation", "finished_operation"]
 
 _ROWS = 61
 """Temperatures at which the current is tabulated and drawn; no figure depends on it."""
@@ -112,7 +112,18 @@ def check(study: Study) -> CheckResult:
     NoSolutionError
         If the circuit has no solution somewhere in the range.
     """
-    operation = finished_operation(study)
+    return check_operation(finished_operation(study))
+
+
+def check_operation(operation: Operation) -> CheckResult:
+    """Check a design at its temperatures; it may be one output of several (`tcopt.cascade`).
+
+    Raises
+    ------
+    NoSolutionError
+        If the circuit has no solution somewhere in the range.
+    """
+    study = operation.study
     found = assess(operation)
     T = np.linspace(study.range.low, study.range.high, _ROWS)
     places = np.array([study.range.low, study.range.reference, study.range.high])
