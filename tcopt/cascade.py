@@ -144,7 +144,7 @@ class Cascade:
             step = np.where(sound, np.clip(change, -_REACH, _REACH), step / 2)
             open_points = ~sound | (np.abs(step).max(axis=0) > _CLOSE)
             if not open_points.any():
-                return np.exp(log + step)
+                return np.asarray(np.exp(log + step))
         where = celsius(float(T[open_points][0]))
         raise NoSolutionError(
             f"{first.study.circuit.topology}: no solution of all outputs together at {where}; "
