@@ -16,12 +16,13 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
     N = terms.symbol("N")
     I_in, I_out = terms.current("I_in", area=1), terms.current("I_out", area=N)
     q2 = terms.transistor(I_out, N, to_output=True)
-    q1 = terms.input_diode(I_in, other_bases=q2.base_current)
-    bases = q1.base_current + q2.base_current
-    drop = (I_in + terms.supplied(q2.base_current)) * terms.resistance("drop")
-    voltage = q1.control_voltage + terms.above_base(bases)
+    # the resistor carries the input transistor's collector and the other's base current
+    q1 = terms.input_diode(I_in, collector=q2.control_voltage)
+    through = I_in + terms.supplied(q2.base_current)
+    drop = through * terms.resistance("drop")
+    drawn = through + terms.supplied(q1.base_current)
     return (
-        input_loop(terms, feed, I_in + terms.supplied(bases), voltage),
+        input_loop(terms, feed, drawn, q1.control_voltage),
         Loop("I_out", q1.control_voltage - drop - q2.control_voltage),
     )
 
@@ -39,4 +40,5 @@ CIRCUIT = Circuit(
     feeds=(GIVEN, SUPPLY),
     is_mirror=True,
     devices=("bipolar", "mos"),
+    takes_follower=False,
 )

@@ -69,6 +69,7 @@ class Circuit:
     rests_at_zero : the loop also holds with no current, so it needs a start-up
     is_mirror : copies an input current, so a plain mirror is a fair comparison
     devices : kinds of transistor that it takes: 'bipolar', 'mos', or none
+    takes_follower : all bases hang on one node, so that a follower can supply them
     """
 
     topology: str
@@ -82,6 +83,7 @@ class Circuit:
     rests_at_zero: bool = False
     is_mirror: bool = False
     devices: tuple[str, ...] = ("bipolar",)
+    takes_follower: bool = True
 
     @property
     def needs_transistor(self) -> bool:

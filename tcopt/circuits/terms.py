@@ -95,10 +95,12 @@ class Terms:
         area: sp.Expr | int = 1,
         emitter_resistor: sp.Expr | int = 0,
         *,
+        raised: sp.Expr | int = 0,
         to_output: bool = False,
     ) -> Transistor:
         """Return a transistor from what flows into its collector, leakage included [A].
 
+        ``raised``: what lies between emitter and ground besides the resistor [V].
         ``to_output``: its collector is the output and sits at the voltage of the
         load; else it does not carry the Early effect of a voltage (see `diode`).
         """
@@ -106,7 +108,7 @@ class Terms:
         leakage = 0 if self.device is Device.IDEAL else area * self.symbol("I_L")
         junction = sp.expand(current - leakage)
         emitter = junction + self._base(junction)
-        lifted = emitter * emitter_resistor
+        lifted = emitter * emitter_resistor + raised
         factor: sp.Expr = sp.Integer(1)
         if to_output and self.device is not Device.IDEAL:
             factor = 1 + (self.symbol("V_out") - lifted) / self.symbol("V_A")
@@ -135,13 +137,23 @@ class Terms:
         current: sp.Expr,
         emitter_resistor: sp.Expr | int = 0,
         other_bases: sp.Expr | int = 0,
+        collector: sp.Expr | None = None,
     ) -> Transistor:
-        """Return a diode-connected transistor of unit area from its collector current [A]."""
+        """Return a diode-connected transistor of unit area from its collector current [A].
+
+        ``collector``: the voltage of its collector to ground [V], where that is not
+        the node which drives its own base and the others.
+        """
         leakage = 0 if self.device is Device.IDEAL else self.symbol("I_L")
-        return self._diode_of(sp.expand(current - leakage), emitter_resistor, other_bases)
+        junction = sp.expand(current - leakage)
+        return self._diode_of(junction, emitter_resistor, other_bases, collector)
 
     def _diode_of(
-        self, junction: sp.Expr, emitter_resistor: sp.Expr | int, other_bases: sp.Expr | int
+        self,
+        junction: sp.Expr,
+        emitter_resistor: sp.Expr | int,
+        other_bases: sp.Expr | int,
+        collector: sp.Expr | None = None,
     ) -> Transistor:
         emitter = junction + self._base(junction)
         lifted = emitter * emitter_resistor
@@ -150,7 +162,9 @@ class Terms:
             return self._made(junction, one, lifted, emitter, one)
         V_D = self.symbol("V_D")
         made = self._made(junction, one, lifted, emitter, 1 + V_D / self.symbol("V_A"))
-        across = made.over_emitter + self.above_base(made.base_current + other_bases)
+        if collector is None:
+            collector = made.control_voltage + self.above_base(made.base_current + other_bases)
+        across = collector - lifted
         if "V_D" not in self.unknowns:
             self.unknowns["V_D"] = V_D
             self.extra.append(Loop("V_D", V_D - across))
@@ -221,7 +235,8 @@ def kinds_of(circuit: Circuit) -> tuple[Device, ...]:
     """Return the kinds of transistor for which the circuit is stated."""
     found: list[Device] = []
     if "bipolar" in circuit.devices:
-        found += [Device.IDEAL, Device.BIPOLAR, Device.FOLLOWED]
+        found += [Device.IDEAL, Device.BIPOLAR]
+        found += [Device.FOLLOWED] if circuit.takes_follower else []
     if "mos" in circuit.devices:
         found.append(Device.MOS)
     return tuple(found) or (Device.IDEAL,)

@@ -16,13 +16,17 @@ def junction_over_resistor(terms: Terms, slot: str) -> tuple[Loop, ...]:
     """Return the loop: the first transistor's control voltage lies across the slot.
 
     The second transistor carries the output; its emitter feeds the resistor and
-    the first one's base.
+    the first one's base, its base hangs on the first one's collector.
     """
     I_out = terms.current("I_out", area=1)
-    q2 = terms.transistor(I_out)
-    q1 = terms.transistor(I_out - terms.supplied(q2.base_current))
-    through = q2.emitter_current - q1.base_current
-    return (Loop("I_out", q1.control_voltage - through * terms.resistance(slot)),)
+    bare = terms.transistor(I_out)
+    left = I_out - terms.supplied(bare.base_current)
+    through = bare.emitter_current - terms.transistor(left).base_current
+    drop = through * terms.resistance(slot)
+    q2 = terms.transistor(I_out, raised=drop, to_output=True)
+    collector = q2.control_voltage + terms.above_base(q2.base_current)
+    q1 = terms.input_diode(left, collector=collector)
+    return (Loop("I_out", q1.control_voltage - drop),)
 
 
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001

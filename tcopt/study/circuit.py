@@ -157,6 +157,12 @@ class CircuitChoices(Model):
                 "it with a bipolar transistor and the effect 'current gain'",
                 "base_current",
             )
+        if follower and not self.circuit.takes_follower:
+            raise refusal(
+                f"'through follower' for {self.topology!r}, whose bases hang on two nodes",
+                "'from input'",
+                "base_current",
+            )
         if not mos and self.well != "common":
             raise refusal("'own' for a bipolar transistor", "it with MOS transistors alone", "well")
 

@@ -17,26 +17,28 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any
     x0 = inverse_beta*exp(log_J_out)
     x1 = exp(log_J_in)
     x2 = inverse_beta*x1 + x1
-    x3 = R_drop*x1
-    x4 = R_drop*x0
-    x5 = V_D*inverse_V_A + 1
-    x6 = -V_T*log_J_in + V_T*log(x5)
-    x7 = -V_T
-    x8 = V_T*inverse_V_A/x5
+    x3 = V_T*log_J_out
+    x4 = R_drop*x1
+    x5 = log(N)
+    x6 = R_drop*x0
+    x7 = V_D*inverse_V_A + 1
+    x8 = log(V_out*inverse_V_A + 1)
+    x9 = -V_T
     f0 = I_L - I_given + x0 + x2
-    f1 = -I_L*R_drop - V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A + 1) - x3 - x4 - x6
-    f2 = V_D + V_T*log_I_S + x6
+    f1 = -I_L*R_drop + V_T*log_J_in + V_T*x5 + V_T*x8 - V_T*log(x7) - x3 - x4 - x6
+    f2 = V_D + V_T*log_I_S + V_T*x5 + V_T*x8 - x3
     a00 = x2
     a01 = x0
-    a10 = -x3 - x7
-    a11 = -V_T - x4
-    a12 = -x8
-    a20 = x7
-    a22 = x8 + 1
-    y0 = a00*a11
-    y1 = a10*a22
-    y2 = (a01*a12*a20 - a01*y1 + a22*y0)**(-1.0)
-    return (y2*(-a01*a12*f2 + a01*a22*f1 - a11*a22*f0), y2*(a00*a12*f2 - a00*a22*f1 - f0*(a12*a20 - y1)), y2*(-a01*a20*f1 + a11*a20*f0 - f2*(-a01*a10 + y0)))
+    a10 = -x4 - x9
+    a11 = -V_T - x6
+    a12 = -V_T*inverse_V_A/x7
+    a21 = x9
+    y0 = a01*a10
+    y1 = a12*a21
+    y2 = (a00*a11 - a00*y1 - y0)**(-1.0)
+    y3 = a12*f2
+    y4 = a10*f0
+    return (y2*(a01*f1 - a01*y3 - f0*(a11 - y1)), y2*(-a00*f1 + a00*y3 + y4), y2*(a00*a21*f1 - a21*y4 - f2*(a00*a11 - y0)))
 
 
 def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
@@ -47,29 +49,27 @@ def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N:
     x3 = x1 + x2
     x4 = inverse_beta*exp(log_J_out)
     x5 = I_L + x4
-    x6 = R_drop*x1
-    x7 = R_drop*x4
-    x8 = V_T*log_J_out
-    x9 = I_L*R_drop
-    x10 = log(N)
-    x11 = V_out*inverse_V_A
+    x6 = I_L*R_drop
+    x7 = V_T*log_J_out
+    x8 = R_drop*x1
+    x9 = log(N)
+    x10 = R_drop*x4
+    x11 = V_D*inverse_V_A
     x12 = x11 + 1
-    x13 = log(x12)
-    x14 = V_D*inverse_V_A
+    x13 = V_T*log(x12)
+    x14 = V_out*inverse_V_A
     x15 = x14 + 1
-    x16 = V_T*log(x15)
-    x17 = V_T*log_J_in
-    x18 = x16 - x17
-    x19 = V_T*log_I_S + x18
-    x20 = -V_T
-    x21 = V_T/x15
-    x22 = inverse_V_A*x21
-    x23 = x12**(-1.0)
-    x24 = x14*x21
+    x16 = log(x15)
+    x17 = V_T*x16 + V_T*x9 - x7
+    x18 = V_T*log_I_S + x17
+    x19 = -V_T
+    x20 = V_T/x12
+    x21 = x15**(-1.0)
+    x22 = V_T*x14*x21
     return (
-        (x0 + x3 + x5, V_T*x10 + V_T*x13 - x18 - x6 - x7 - x8 - x9, V_D + x19),
-        ((x3, x4, 0), (-x20 - x6, -V_T - x7, -x22), (x20, 0, x22 + 1)),
-        ((I_L, x0, 0, 0, 0, 0, 0, x2 + x4, 0), (-x9, 0, V_T, -x1 - x5, V_T*x10 + V_T*x13 - x16 + x17 - x8, V_T*x11*x23, V_T*V_out*inverse_V_A*x23 - x24, -x7, 0), (0, 0, 0, 0, x19, 0, x24, 0, V_T)),
+        (x0 + x3 + x5, V_T*log_J_in + V_T*x16 + V_T*x9 - x10 - x13 - x6 - x7 - x8, V_D + x18),
+        ((x3, x4, 0), (-x19 - x8, -V_T - x10, -inverse_V_A*x20), (0, x19, 1)),
+        ((I_L, x0, 0, 0, 0, 0, 0, x2 + x4, 0), (-x6, 0, V_T, -x1 - x5, V_T*log_J_in - x13 + x17, x22, V_T*V_out*inverse_V_A*x21 - x11*x20, -x10, 0), (0, 0, V_T, 0, x18, x22, x22, 0, V_T)),
     )
 
 

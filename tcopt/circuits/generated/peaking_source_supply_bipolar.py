@@ -22,28 +22,27 @@ def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: Any,
     x5 = exp(log_J_in)
     x6 = R_feed*x5
     x7 = inverse_beta*x6 + x6
-    x8 = R_drop*x5
-    x9 = R_drop*x3
-    x10 = -x0 + x2
-    x11 = V_T*inverse_V_A/x1
-    x12 = -V_T
+    x8 = V_T*log_J_out
+    x9 = R_drop*x5
+    x10 = log(N)
+    x11 = R_drop*x3
+    x12 = log(V_out*inverse_V_A + 1)
+    x13 = V_T*inverse_V_A/x1
+    x14 = -V_T
     f0 = -I_L*R_feed + V_CC + V_T*log_I_S - x0 + x2 - x4 - x7
-    f1 = -I_L*R_drop - V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A + 1) - x10 - x8 - x9
-    f2 = V_D + V_T*log_I_S + x10
+    f1 = -I_L*R_drop + V_T*x10 + V_T*x12 + x0 - x11 - x2 - x8 - x9
+    f2 = V_D + V_T*log_I_S + V_T*x10 + V_T*x12 - x8
     a00 = -V_T - x7
     a01 = -x4
-    a02 = x11
-    a10 = -x12 - x8
-    a11 = -V_T - x9
-    a12 = -x11
-    a20 = x12
-    a22 = x11 + 1
-    y0 = a01*a12
-    y1 = a02*a11
-    y2 = a00*a22
-    y3 = a10*a22
-    y4 = (-a01*y3 + a11*y2 + a20*y0 - a20*y1)**(-1.0)
-    return (y4*(a01*a22*f1 - a11*a22*f0 - f2*(y0 - y1)), y4*(-f0*(a12*a20 - y3) - f1*(-a02*a20 + y2) - f2*(-a00*a12 + a02*a10)), y4*(-a01*a20*f1 + a11*a20*f0 - f2*(a00*a11 - a01*a10)))
+    a02 = x13
+    a10 = -x14 - x9
+    a11 = -V_T - x11
+    a12 = -x13
+    a21 = x14
+    y0 = a12*a21
+    y1 = a00*a11 - a01*a10
+    y2 = (-a00*y0 + a02*a10*a21 + y1)**(-1.0)
+    return (y2*(-f0*(a11 - y0) - f1*(-a01 + a02*a21) - f2*(a01*a12 - a02*a11)), y2*(-a00*f1 + a10*f0 - f2*(-a00*a12 + a02*a10)), y2*(a00*a21*f1 - a10*a21*f0 - f2*y1))
 
 
 def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
@@ -69,17 +68,20 @@ def partials(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: 
     x18 = x17 + 1
     x19 = log(x18)
     x20 = x10 - x7
-    x21 = V_T*log_I_S + x20
-    x22 = V_T/x9
-    x23 = inverse_V_A*x22
-    x24 = -V_T
-    x25 = I_L + x0 + x4
-    x26 = x22*x8
-    x27 = x18**(-1.0)
+    x21 = V_T*log_I_S
+    x22 = V_T*x16 + V_T*x19 - x14
+    x23 = x21 + x22
+    x24 = V_T/x9
+    x25 = inverse_V_A*x24
+    x26 = -V_T
+    x27 = I_L + x0 + x4
+    x28 = x24*x8
+    x29 = x18**(-1.0)
+    x30 = V_T*x17*x29
     return (
-        (V_CC + V_T*log_I_S - x1 - x11 - x2 - x6, V_T*x16 + V_T*x19 - x12 - x13 - x14 - x15 - x20, V_D + x21),
-        ((-V_T - x1 - x3, -x5, x23), (-x12 - x24, -V_T - x13, -x23), (x24, 0, x23 + 1)),
-        ((-x2, 0, 0, -inverse_beta*x0 - x25, V_CC, x21, 0, x26, -x6, V_T), (-x15, V_T, -x25, 0, 0, V_T*x16 + V_T*x19 + x11 - x14, V_T*x17*x27, V_T*V_out*inverse_V_A*x27 - x26, -x13, 0), (0, 0, 0, 0, 0, x21, 0, x26, 0, V_T)),
+        (V_CC + V_T*log_I_S - x1 - x11 - x2 - x6, V_T*x16 + V_T*x19 - x12 - x13 - x14 - x15 - x20, V_D + x23),
+        ((-V_T - x1 - x3, -x5, x25), (-x12 - x26, -V_T - x13, -x25), (0, x26, 1)),
+        ((-x2, 0, 0, -inverse_beta*x0 - x27, V_CC, x20 + x21, 0, x28, -x6, V_T), (-x15, V_T, -x27, 0, 0, x11 + x22, x30, V_T*V_out*inverse_V_A*x29 - x28, -x13, 0), (0, V_T, 0, 0, 0, x23, x30, x30, 0, V_T)),
     )
 
 
