@@ -23,9 +23,11 @@ from tcopt.operation import Choices, Mix, Operation, fixed_mixes
 from tcopt.study import OpenSlot, Span, Study
 from tcopt.targets import target_current
 
-__all__ = ["design"]
+__all__ = [
+    "SPARE", "design", "needed_point", "open_slots", "plain_mirror", "rounded", "search_groups",
+]  # fmt: skip
 
-_SPARE = 5
+SPARE = 5
 """Designs assessed beyond those shown, since rounding may change their order."""
 _MOST_CHOICES = 10_000
 
@@ -45,30 +47,12 @@ def design(study: Study, progress: Callable[[int, int], None] | None = None) -> 
     NoSolutionError
         If no allowed design gives a current over the whole range.
     """
-    open_slots = {
-        name: slot for name, slot in study.resistors.items() if isinstance(slot, OpenSlot)
-    }
     groups = list(_groups(study))
     for group in groups:
         require_supply(study, group[0].choices.area_ratio)
-    target = target_current(study.target, study.range.reference)
-    keep = study.search.show
-    if len(open_slots) == 1:
-        ((name, slot),) = open_slots.items()
-        bands = [Group(Band(operation, name, target), span) for operation, span in groups]
-        best, deviation = search_one_slot(bands, slot, keep, progress)
-        bound = Bound(deviation, proven=all(span is None for _, span in groups))
-    elif len(open_slots) == 2:
-        best, deviation = search_two_slots(groups, open_slots, target, keep, progress)
-        bound = Bound(deviation, proven=False)
-    elif not open_slots:
-        best, bound = _fixed_slots_only(groups, keep)
-    else:
-        raise InputError(
-            f"{study.path}: resistors: found {len(open_slots)} open slots "
-            f"({', '.join(open_slots)}); accepted: at most two, the others with parts"
-        )
-    designs = _finished(study, best, tuple(open_slots), keep)
+    slots = open_slots(study)
+    best, bound = search_groups(study, groups, progress)
+    designs = _finished(study, best, tuple(slots))
     if not designs:
         raise NoSolutionError(
             f"{study.path}: no allowed mix gives the target current over the whole range; "
@@ -77,11 +61,48 @@ def design(study: Study, progress: Callable[[int, int], None] | None = None) -> 
     return DesignResult(
         study=study,
         designs=designs,
-        plain_mirrors=tuple(_plain_mirror(found) for found in designs),
+        plain_mirrors=tuple(plain_mirror(found) for found in designs),
         bound=bound,
-        needed={name: _needed_point(designs[0], name) for name in open_slots},
+        needed={name: needed_point(designs[0], name) for name in slots},
         examined=best.examined,
         skipped=best.skipped,
+    )
+
+
+def open_slots(study: Study) -> dict[str, OpenSlot]:
+    """Return the slots that are to be designed."""
+    return {name: slot for name, slot in study.resistors.items() if isinstance(slot, OpenSlot)}
+
+
+def search_groups(
+    study: Study,
+    groups: Sequence[tuple[Operation, tuple[float, float] | None]],
+    progress: Callable[[int, int], None] | None = None,
+) -> tuple[Best, Bound]:
+    """Return the best designs over all groups of choices, values not yet rounded, and the bound.
+
+    Parameters
+    ----------
+    study : the question
+    groups : operation with its open slots, and the input's span if it is free
+    progress : called with combinations done and combinations in all
+    """
+    slots = open_slots(study)
+    target = target_current(study.target, study.range.reference)
+    keep = study.search.show
+    if len(slots) == 1:
+        ((name, slot),) = slots.items()
+        bands = [Group(Band(operation, name, target), span) for operation, span in groups]
+        best, deviation = search_one_slot(bands, slot, keep, progress)
+        return best, Bound(deviation, proven=all(span is None for _, span in groups))
+    if len(slots) == 2:
+        best, deviation = search_two_slots(groups, slots, target, keep, progress)
+        return best, Bound(deviation, proven=False)
+    if not slots:
+        return _fixed_slots_only(groups, keep)
+    raise InputError(
+        f"{study.path}: resistors: found {len(slots)} open slots "
+        f"({', '.join(slots)}); accepted: at most two, the others with parts"
     )
 
 
@@ -123,26 +144,30 @@ def _fixed_slots_only(
     return best, Bound(min(fit.deviation for fit in best.ranked()), proven=True)
 
 
-def _finished(
-    study: Study, best: Best, open_slots: Sequence[str], keep: int
-) -> tuple[Assessment, ...]:
+def _finished(study: Study, best: Best, names: Sequence[str]) -> tuple[Assessment, ...]:
     """Round the values of the best designs, solve them fully, and rank what they then do."""
+    keep = study.search.show
     found: list[Assessment] = []
-    for fit in best.ranked()[: keep + _SPARE]:
-        operation = fit.operation
-        mixes = dict(operation.mixes)
-        for name in open_slots:
-            mixes[name] = _rounded(mixes[name], study.search.digits)
-        choices = operation.choices
-        if choices.input_current is not None:
-            current = _round(choices.input_current, study.search.digits)
-            choices = replace(choices, input_current=current)
+    for fit in best.ranked()[: keep + SPARE]:
         try:
-            found.append(assess(replace(operation, choices=choices, mixes=mixes)))
+            found.append(assess(rounded(fit.operation, names)))
         except NoSolutionError:
             continue
     found.sort(key=lambda item: item.residual_drift.deviation_ppm)
     return tuple(found[:keep])
+
+
+def rounded(operation: Operation, names: Sequence[str]) -> Operation:
+    """Return a design with the resistors in these slots, and its input, to the study's digits."""
+    digits = operation.study.search.digits
+    mixes = dict(operation.mixes)
+    for name in names:
+        mixes[name] = _rounded(mixes[name], digits)
+    choices = operation.choices
+    # one of a list is what the user can have: it is not rounded away from there
+    if choices.input_current is not None and isinstance(operation.study.input_currents, Span):
+        choices = replace(choices, input_current=_round(choices.input_current, digits))
+    return replace(operation, choices=choices, mixes=mixes)
 
 
 def _round(value: float, digits: int) -> float:
@@ -156,7 +181,7 @@ def _rounded(mix: Mix, digits: int) -> Mix:
     return Mix(parts, mix.join)
 
 
-def _plain_mirror(found: Assessment) -> PlainMirror | None:
+def plain_mirror(found: Assessment) -> PlainMirror | None:
     """Return what a mirror without emitter resistors would take for the same output."""
     operation = found.operation
     study = operation.study
@@ -172,7 +197,7 @@ def _plain_mirror(found: Assessment) -> PlainMirror | None:
     return PlainMirror(float(current[0]), feed)
 
 
-def _needed_point(found: Assessment, slot: str) -> NeededPoint:
+def needed_point(found: Assessment, slot: str) -> NeededPoint:
     """Return the perfect resistor's value and coefficients, from the needed resistance.
 
     Its derivatives are those of its Chebyshev interpolant over a few kelvin
