@@ -71,11 +71,8 @@ class Style(StrEnum):
     PYTHON = "python"
 
 
-class Feed(StrEnum):
-    """Where the input current of a mirror comes from."""
-
-    GIVEN = "given"
-    SUPPLY = "supply"
+_DERIVED = {Style.TEXT: "derive.txt", Style.LATEX: "derive.tex", Style.PYTHON: "derive.py"}
+"""File that `derive` writes."""
 
 
 def main() -> None:
@@ -165,6 +162,58 @@ def start(
     study = shlex.quote(str(folder / "study.toml"))
     lines = [*files, "", f"Now: tcopt design {study}"]
     say("\n".join(lines) + "\n")
+
+
+@app.command()
+def derive(
+    topology: Annotated[
+        str, typer.Argument(metavar="TOPOLOGY", help="A circuit, such as 'degenerated mirror'.")
+    ],
+    study: Annotated[
+        Path | None,
+        typer.Option("--study", metavar="STUDY", help="Put the numbers of this study in."),
+    ] = None,
+    style: Annotated[
+        Style, typer.Option("--as", help="A note to read, LaTeX to take in, or a Python module.")
+    ] = Style.TEXT,
+    feed: Annotated[
+        str | None,
+        typer.Option("--input", metavar="INPUT", help="Where its input comes from: given, supply."),
+    ] = None,
+    transistor: Annotated[
+        str | None,
+        typer.Option(metavar="KIND", help="Kind of transistor: ideal, bipolar or mos, say."),
+    ] = None,
+    as_json: Json = False,
+    out: Out = None,
+) -> None:
+    """Derive the formulas of a circuit and the resistor it needs.
+
+    The loops, the currents, their temperature coefficients of first and second order, the rules
+    for flat and for PTAT, and the coefficients that the perfect resistor would have. A word that
+    is no circuit is answered with the list of those that are.
+    """
+    from tcopt.derive import render  # noqa: PLC0415
+    from tcopt.explain import explain  # noqa: PLC0415
+
+    question = None
+    if study is not None:
+        from tcopt.study import load_study  # noqa: PLC0415
+
+        question = load_study(study)
+    text = render(explain(topology, feed, transistor, question), style.value)
+    if out is not None:
+        from tcopt.show.folder import write_folder  # noqa: PLC0415
+
+        write_folder(out, {_DERIVED[style]: text}, read=study)
+    from tcopt.show.console import say  # noqa: PLC0415
+
+    if as_json:
+        from tcopt.show.json import json_text  # noqa: PLC0415
+
+        say(json_text({"topology": topology, "as": style.value, "text": text}))
+        return
+    say(text if text.endswith("\n") else f"{text}\n")
 
 
 @app.command()
@@ -272,7 +321,7 @@ def spread(
     as_json: Json = False,
     out: Out = None,
 ) -> None:
-    """Draw parts of a finished design and say what silicon makes of it.
+    """Draw parts of a finished design: what silicon makes of it.
 
     Quantiles, yield, causes and corners, before and after the study's trim. The same seed gives
     the same result whoever shares the work. The limit is met if the wanted share of the parts
