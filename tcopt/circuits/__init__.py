@@ -15,8 +15,8 @@ from tcopt.circuits.statement import GIVEN, SELF, SUPPLY, Circuit, Loop, Slot
 __all__ = ["CIRCUITS", "GIVEN", "SELF", "SUPPLY", "Circuit", "Loop", "Slot", "module_name"]
 
 _NOT_TOPOLOGIES = {
-    "__init__", "closed_form", "device_module", "emit", "generate", "ideal_module", "statement",
-    "terms",
+    "__init__", "closed_form", "device_module", "emit", "generate", "ideal_module", "node_module",
+    "statement", "terms",
 }  # fmt: skip
 
 

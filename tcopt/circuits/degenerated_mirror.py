@@ -21,8 +21,10 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
     q1 = terms.input_diode(I_in, terms.resistance("input"), others)
     bases = q1.base_current + others
     voltage = q1.control_voltage + terms.above_base(bases)
+    drawn = I_in + terms.supplied(bases)
+    terms.observe(V_in=terms.collector(q1, voltage), first=q1, output=q2, I_top=drawn)
     return (
-        input_loop(terms, feed, I_in + terms.supplied(bases), voltage),
+        input_loop(terms, feed, drawn, voltage),
         Loop("I_out", q1.control_voltage - q2.control_voltage),
     )
 

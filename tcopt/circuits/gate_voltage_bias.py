@@ -20,6 +20,7 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001
     N = terms.symbol("N")
     I_out = terms.current("I_out", area=N)
     q1 = terms.transistor(I_out, N, terms.resistance("source"), to_output=True)
+    terms.observe(output=q1)
     return (Loop("I_out", terms.symbol("V_ref") - q1.control_voltage),)
 
 

@@ -15,6 +15,7 @@ from tcopt.circuits import CIRCUITS, module_name
 from tcopt.circuits.device_module import device_module
 from tcopt.circuits.emit import LOG_I_S, function, module, text
 from tcopt.circuits.ideal_module import ideal_module
+from tcopt.circuits.node_module import node_module
 from tcopt.circuits.terms import Device, kinds_of
 from tcopt.laws import bipolar, mosfet, resistor
 
@@ -130,6 +131,9 @@ def modules() -> dict[Path, str]:
                     if device is Device.IDEAL
                     else device_module(circuit, feed, device)
                 )
+                nodes = node_module(circuit, feed, device)
+                if nodes is not None:
+                    found[here / "generated" / f"{name}_nodes.py"] = nodes
     return found
 
 

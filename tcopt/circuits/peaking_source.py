@@ -21,6 +21,7 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
     through = I_in + terms.supplied(q2.base_current)
     drop = through * terms.resistance("drop")
     drawn = through + terms.supplied(q1.base_current)
+    terms.observe(V_in=q1.control_voltage, first=q1, output=q2, I_top=drawn)
     return (
         input_loop(terms, feed, drawn, q1.control_voltage),
         Loop("I_out", q1.control_voltage - drop - q2.control_voltage),

@@ -17,7 +17,10 @@ def core(terms: Terms, current: str) -> tuple[Transistor, Loop]:
     N = terms.symbol("N")
     I_core = terms.current(current, area=N)
     q2 = terms.transistor(I_core, N, terms.resistance("core"), to_output=True)
-    q1 = terms.diode(terms.symbol("M") * I_core, other_bases=q2.base_current)
+    forced = terms.symbol("M") * I_core
+    q1 = terms.diode(forced, other_bases=q2.base_current)
+    node = terms.collector(q1, q1.control_voltage)
+    terms.observe(V_in=node, first=q1, output=q2, I_top=forced + I_core)
     return q1, Loop(current, q1.control_voltage - q2.control_voltage)
 
 

@@ -16,6 +16,7 @@ __all__ = ["CIRCUIT"]
 def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:  # noqa: ARG001
     q1, loop = core(terms, "I_core")
     falling = terms.current("I_out") - terms.current("I_core")
+    terms.observe(I_top=terms.observed["I_top"] + falling)
     return (
         loop,
         Loop("I_out", q1.over_emitter - falling * terms.resistance("base")),

@@ -39,12 +39,16 @@ class Transistor:
     emitter_current : what leaves at emitter or source [A]
     control_voltage : of base or gate, to ground [V]
     over_emitter : base-emitter or gate-source voltage [V]
+    foot : of emitter or source, to ground [V]
+    density : junction current, without leakage, per unit of area [A]
     """
 
     base_current: sp.Expr
     emitter_current: sp.Expr
     control_voltage: sp.Expr
     over_emitter: sp.Expr
+    foot: sp.Expr
+    density: sp.Expr
 
 
 class Terms:
@@ -56,6 +60,7 @@ class Terms:
     unknowns : what the loops are solved for: a junction current for each named
         current, and voltages of diode-connected transistors where they matter
     extra : loops that the devices bring with them
+    observed : what else a solution is asked for, by its name in the nomenclature
     """
 
     log = staticmethod(sp.log)
@@ -65,6 +70,42 @@ class Terms:
         self.currents: dict[str, sp.Expr] = {}
         self.unknowns: dict[str, sp.Symbol] = {}
         self.extra: list[Loop] = []
+        self.observed: dict[str, sp.Expr] = {}
+
+    def observe(
+        self,
+        V_in: sp.Expr | None = None,
+        first: Transistor | None = None,
+        output: Transistor | None = None,
+        I_top: sp.Expr | None = None,
+    ) -> None:
+        """Name what headroom, inversion and power are read from.
+
+        Parameters
+        ----------
+        V_in : of the node that the input, or the mirror on top, feeds
+        first : the transistor on the input side
+        output : the one whose collector takes, or makes, the output
+        I_top : what the branches draw at their top; where the circuit makes its own
+            current, all of them together, else the input alone
+        """
+        found = {
+            "V_in": V_in,
+            "V_foot": output and output.foot,
+            "I_top": I_top,
+        }
+        if self.device is Device.MOS:
+            found |= {"D_in": first and first.density, "D_out": output and output.density}
+        self.observed |= {name: sp.sympify(e) for name, e in found.items() if e is not None}
+
+    def collector(self, diode: Transistor, voltage: sp.Expr) -> sp.Expr:
+        """Return a diode-connected transistor's collector voltage to ground [V], by its unknown.
+
+        ``voltage``: the same in currents, where that unknown is not solved for.
+        """
+        if "V_D" not in self.unknowns:
+            return voltage
+        return self.unknowns["V_D"] + diode.foot
 
     def symbol(self, name: str) -> sp.Symbol:
         """Return the symbol of a quantity of the nomenclature."""
@@ -224,11 +265,13 @@ class Terms:
                 self.symbol("I_spec"),
                 early_factor,
             )
-            return Transistor(sp.Integer(0), emitter, control, control - lifted)
+            none = sp.Integer(0)
+            return Transistor(none, emitter, control, control - lifted, lifted, junction / area)
         over = base_emitter_voltage(
             junction, area, self.symbol("V_T"), self.symbol("I_S"), early_factor
         )
-        return Transistor(self._base(junction), emitter, over + lifted, over)
+        base = self._base(junction)
+        return Transistor(base, emitter, over + lifted, over, lifted, junction / area)
 
 
 def kinds_of(circuit: Circuit) -> tuple[Device, ...]:

@@ -26,6 +26,9 @@ def junction_over_resistor(terms: Terms, slot: str) -> tuple[Loop, ...]:
     q2 = terms.transistor(I_out, raised=drop, to_output=True)
     collector = q2.control_voltage + terms.above_base(q2.base_current)
     q1 = terms.input_diode(left, collector=collector)
+    # as much as the output is forced into the first transistor's collector
+    node = terms.collector(q1, collector)
+    terms.observe(V_in=node, first=q1, output=q2, I_top=2 * I_out)
     return (Loop("I_out", q1.control_voltage - drop),)
 
 
