@@ -8,8 +8,10 @@ two edges are the needed resistances of the two currents at the edge.
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from tcopt.arrays import Array
 from tcopt.operation import Operation
@@ -47,9 +49,13 @@ class Band:
         choices = replace(self.operation.choices, input_current=current)
         return replace(self, operation=replace(self.operation, choices=choices))
 
-    def resistance(self, temperature: Array, off: float) -> Array:
+    @cached_property
+    def _known(self) -> dict[tuple[bytes, str, float], Edges]:
+        return {}
+
+    def resistance(self, temperature: Array, off: ArrayLike) -> Array:
         """Return the needed resistance [ohm] for the target times (1 + off)."""
-        output = self.target.current(temperature) * (1 + off)
+        output = self.target.current(temperature) * (1 + np.asarray(off))
         return self.operation.needed(self.slot, output, temperature)
 
     def edges(self, temperature: Array, join: str, e: float) -> Edges:
@@ -58,25 +64,25 @@ class Band:
         Where the current cannot reach the edge with any resistance, there is no
         edge: minus or plus infinity.
         """
-        low, high = self._edge_pair(temperature, join, e)
-        low_up, high_up = self._edge_pair(temperature, join, e + _STEP)
-        low_down, high_down = self._edge_pair(temperature, join, e - _STEP)
-        with np.errstate(invalid="ignore"):
-            return Edges(
-                low, high, (low_up - low_down) / (2 * _STEP), (high_up - high_down) / (2 * _STEP)
-            )
+        key = (temperature.tobytes(), join, e)
+        if key not in self._known:
+            # all in one call: its overhead is that of several hundred temperatures
+            offs = np.array([e, e + _STEP, e - _STEP])
+            above, below = self.resistance(temperature, np.stack([offs, -offs])[..., None])
+            if self._rises:
+                above, below = below, above
+            # `above` is now the lower edge in resistance, `below` the upper one
+            if join == "parallel":
+                with np.errstate(divide="ignore"):
+                    above, below = 1 / below, np.where(above > 0, 1 / above, np.inf)
+            with np.errstate(invalid="ignore"):
+                slopes = [(edge[1] - edge[2]) / (2 * _STEP) for edge in (above, below)]
+            self._known[key] = Edges(above[0], below[0], slopes[0], slopes[1])
+        return self._known[key]
 
-    def _edge_pair(self, temperature: Array, join: str, e: float) -> tuple[Array, Array]:
-        above, below = self.resistance(temperature, e), self.resistance(temperature, -e)
-        if self._rises(temperature):
-            above, below = below, above
-        # `above` is now the lower edge in resistance, `below` the upper one
-        if join == "series":
-            return above, below
-        with np.errstate(divide="ignore"):
-            return 1 / below, np.where(above > 0, 1 / above, np.inf)
-
-    def _rises(self, temperature: Array) -> bool:
-        """Say whether the output rises with this slot's resistance."""
-        middle = temperature[len(temperature) // 2 : len(temperature) // 2 + 1]
+    @cached_property
+    def _rises(self) -> bool:
+        """Whether the output rises with this slot's resistance."""
+        span = self.operation.study.range
+        middle = np.array([(span.low + span.high) / 2])
         return bool(self.resistance(middle, _STEP)[0] > self.resistance(middle, -_STEP)[0])
