@@ -2,7 +2,7 @@
 
 On a grid of 61 temperatures; an extreme inside the range is that of the parabola
 through the three points about it. The curves of bias currents are so smooth that
-this is the continuous figure to within a small part of it (a test states how small).
+this is the continuous figure to within 0.01 ppm of the current.
 """
 
 from __future__ import annotations

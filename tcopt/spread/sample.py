@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import warnings
-from functools import lru_cache
+from threading import local
 from typing import Any
 
 import numpy as np
@@ -42,7 +42,7 @@ def points(sampling: str, seed: int, variates: int, samples: int, block: int) ->
     if sampling != SOBOL:
         stream = np.random.default_rng([seed, block])
         return np.asarray(1 - stream.random((count, variates)))  # (0, 1], see normals
-    drawn = _Sequence.of(seed, variates).points(start, count)
+    drawn = _sequence(seed, variates).points(start, count)
     return np.asarray(drawn + 2.0 ** -(_LAST_BITS + 1))
 
 
@@ -51,19 +51,26 @@ def normals(unit: Array) -> Array:
     return np.asarray(ndtri(np.minimum(unit, 1 - 2.0**-53)))
 
 
+_standing = local()
+"""The sequence of each thread: a cluster may work in threads, and none shall move another's."""
+
+
+def _sequence(seed: int, variates: int) -> _Sequence:
+    """Return the sequence of a seed, standing where this thread left it."""
+    found: _Sequence | None = getattr(_standing, "sequence", None)
+    if found is None or found.of != (seed, variates):
+        found = _standing.sequence = _Sequence(seed, variates)
+    return found
+
+
 class _Sequence:
     """A scrambled Sobol sequence that remembers where it stands; going on is cheap, back is not."""
 
     def __init__(self, seed: int, variates: int) -> None:
+        self.of = (seed, variates)
         from scipy.stats import qmc  # noqa: PLC0415  slow to import
 
         self._engine: Any = qmc.Sobol(variates, bits=_LAST_BITS, rng=np.random.default_rng(seed))
-
-    @staticmethod
-    @lru_cache(maxsize=2)
-    def of(seed: int, variates: int) -> _Sequence:
-        """Return the sequence of a seed, standing where it was left."""
-        return _Sequence(seed, variates)
 
     def points(self, start: int, count: int) -> Array:
         """Return ``count`` points from ``start`` on."""
