@@ -11,7 +11,7 @@ from tcopt.solve import currents
 from tcopt.spread.plan import Plan
 from tcopt.spread.sample import normals, points
 from tcopt.spread.trim import output_of
-from tcopt.study import CircuitChoices, MosTransistor
+from tcopt.study import CircuitChoices, Layout, MosTransistor
 from tests.spread_designs import (
     T_0,
     insertion,
@@ -100,6 +100,18 @@ def test_parallel_parts_add_conductances() -> None:
     assert found["R_sense"] == pytest.approx(R, rel=1e-13)
 
 
+def test_an_ordered_part_lies_anywhere_in_its_tolerance() -> None:
+    """Uniform: the quartiles lie at half the tolerance, none beyond it."""
+    study = sensed((material(matching=1e-8), 1e4)).model_copy(
+        update={"layout": Layout(standard="E24")}
+    )
+    plan = plan_of(study)
+    assert [variate.name for variate in plan.variation.variates] == ["tolerance of film in sense"]
+    R = plan.variation.quantities(_drawn(plan), np.array([T_0]))["R_sense"][:, 0]
+    ends = np.quantile(R / 1e4 - 1, [0, 0.25, 0.5, 0.75, 1])
+    assert ends == pytest.approx([-0.05, -0.025, 0, 0.025, 0.05], abs=1e-5)
+
+
 def test_the_design_as_stated_is_that_of_no_deviation() -> None:
     film = material(tc1=-2e-4, spread=0.05, tc1_spread=1e-4)
     device = transistor(base_emitter_spread=5e-3, matching=2e-8, emitter_area=4e-12)
@@ -141,6 +153,20 @@ def test_gain_varies_where_it_counts() -> None:
     assert "current gain of npn: no spread is given" in _with_gain().variation.missing
     ideal = plan_of(ptat_core(material(), device=transistor(gain_spread=0.2)))
     assert ideal.variation.variates == ()
+
+
+def test_a_part_with_another_gain_is_the_circuit_with_another_gain() -> None:
+    device = transistor(current_gain=50.0, gain_spread=0.3)
+    study = ptat_plus_vbe(material(), device=device)
+    effects = study.circuit.model_copy(update={"effects": ("current gain",)})
+    plan = plan_of(study.model_copy(update={"circuit": effects}))
+    T = np.linspace(233.15, 398.15, 5)
+    found = output_of(plan.variation, np.array([[-1.0], [2.0]]), T)
+    for row, z in zip(found, (-1.0, 2.0), strict=True):
+        other = device.model_copy(update={"current_gain": 50.0 * np.exp(0.3 * z)})
+        moved = effects.model_copy(update={"transistor": other})
+        by_itself = plan_of(study.model_copy(update={"circuit": moved})).operation.output(T)
+        np.testing.assert_allclose(row, by_itself, rtol=1e-12)
 
 
 def _mos_core(**data: Any) -> Plan:

@@ -113,8 +113,16 @@ class _Builder:
             self._load((key, name), sigma, f"{order} of {name}", LOT, common=common, order=order)
 
     def add_matching(self, slot: str, index: int, part: Part) -> None:
-        """Add what one resistor departs from its neighbours of the same material."""
+        """Add what one resistor departs from its neighbours of the same material.
+
+        Of an ordered part that is its tolerance: no tester says where in it a part lies.
+        """
         material = part.material
+        layout = self.operation.study.layout
+        if layout is not None and layout.made_tolerance is not None:
+            name = f"tolerance of {material.name} in {slot}"
+            self._load(("tolerance", slot, str(index)), layout.made_tolerance, name, MISMATCH)
+            return
         name = f"mismatch of {material.name} in {slot}"
         sigma, lacking = None, "no matching coefficient is given"
         if material.matching is not None:

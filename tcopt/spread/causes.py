@@ -27,7 +27,8 @@ __all__ = ["FEWEST", "Cause", "causes_of"]
 
 FEWEST = 256
 """Parts below which no causes are told apart."""
-_PARTS_PER_SLICE = 256
+_PARTS_PER_SLICE = 64
+_FEWEST_SLICES = 16
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,10 +57,10 @@ def causes_of(
     parts = solved.shape[1]
     if parts < FEWEST:
         return ()
-    merge = BINS
-    while merge > 1 and parts * merge // 2 >= BINS * _PARTS_PER_SLICE:
-        merge //= 2
-    slices = BINS // merge
+    slices = _FEWEST_SLICES
+    while slices < BINS and parts >= 2 * slices * _PARTS_PER_SLICE:
+        slices *= 2
+    merge = BINS // slices
     count = sums.count.reshape(len(variates), slices, merge).sum(axis=-1)
     total = sums.total.reshape(*sums.total.shape[:3], slices, merge).sum(axis=-1)
     mean = total.sum(axis=-1, keepdims=True) / parts

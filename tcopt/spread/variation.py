@@ -13,6 +13,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import ArrayLike
+from scipy.special import ndtr
 
 from tcopt.arrays import Array
 from tcopt.laws import generated
@@ -58,7 +59,7 @@ class Variation:
     operation : the design
     variates : the independent causes, in the order of the columns of an array of them
     loads : figure -> (column, weight) of each variate that it moves with; the weight
-        is one standard deviation, in the figure's unit
+        is one standard deviation, in the figure's unit; of a tolerance its half width
     missing : what would vary, but for want of data does not, in words
     """
 
@@ -86,7 +87,8 @@ class Variation:
     ) -> dict[str, Array]:
         """Return the circuit's quantities for many parts, of (parts, temperatures) or alike.
 
-        ``R = R_0 (1 + sheet)(1 + matching) scale (1 + (TC1 + tc1) d + (TC2 + tc2) d^2)``,
+        ``R = R_0 (1 + sheet)(1 + matching)(1 + tolerance) scale (1 + (TC1 + tc1) d + (TC2 + tc2)
+        d^2)``,
         deviations in small letters; the logarithms of I_S, beta, I_spec and N, and V_TH, move
         by theirs; supply, input, reference and mirror ratio by a factor.
 
@@ -114,6 +116,13 @@ class Variation:
             found[resistance_name(slot)] = self._resistance(slot, mix, z, T, scales or {})
         return found
 
+    def _within_tolerance(self, slot: str, index: int, z: Array) -> Array | float:
+        """Return how far an ordered part is off, anywhere in its tolerance alike: (parts, 1)."""
+        (column, tolerance), *_ = self.loads.get(("tolerance", slot, str(index)), ((0, 0.0),))
+        if not tolerance:
+            return 0.0
+        return np.asarray(tolerance * (2 * ndtr(z[:, column : column + 1]) - 1))
+
     def _per_volt(self, T: Array) -> Array:
         """Return ``g_m/I`` of the output transistor of the design as stated [1/V].
 
@@ -133,6 +142,7 @@ class Variation:
             material = part.material
             level = part.value * (1 + self.deviation(("sheet", material.name), z))
             level = level * (1 + self.deviation(("matching", slot, str(index)), z))
+            level = level * (1 + self._within_tolerance(slot, index, z))
             for key in ((slot, None), (slot, material.name)):
                 level = level * np.asarray(scales.get(key, 1.0), dtype=float)
             ratio = generated.resistance_ratio(
