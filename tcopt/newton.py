@@ -2,7 +2,9 @@
 
 Points are taken in blocks that fit the processor's cache. A logarithm never
 moves by more than a few units in one step, so nothing overflows and the
-basin of the physical solution is not left.
+basin of the physical solution is not left. The few points that take longer
+than most go on by themselves; the few that do not get through are handed to
+whoever can bring them home.
 """
 
 from __future__ import annotations
@@ -15,21 +17,22 @@ import numpy as np
 
 from tcopt.arrays import Array
 
-__all__ = [
-    "Pin", "Pinned", "Start", "matrix", "shape_of", "solve", "solve_pinned", "through", "vector",
-]  # fmt: skip
+__all__ = ["REACH", "Block", "Rescue", "Start", "System", "matrix", "settled", "shape_of", "solve",
+           "taken", "vector"]  # fmt: skip
 
-Start = Callable[[Mapping[str, Any]], tuple[Any, ...]]
-"""Takes a block of quantities, returns a first guess of the unknowns."""
-Pinned = tuple[tuple[Any, ...], Any]
-"""The unknowns, and the resistance of a slot [ohm]."""
+Block = Mapping[str, Any]
+"""Quantities by name: numbers, or arrays of one length."""
+Start = Callable[[Block], tuple[Any, ...]]
+"""Takes a block, returns a first guess of the unknowns."""
+Rescue = Callable[[Block, int], tuple[Array, ...]]
+"""Takes a block of so many points, returns the unknowns, nan where there is no solution."""
 
 _BLOCK = 4096
-_STEPS = 80
-_REACH = 3.0
+_FIRST_STEPS = 8
+"""Steps after which the points that are still on their way go on by themselves."""
+_STEPS = 60
+REACH = 3.0
 """Largest change of a logarithm in one step."""
-_SMALL_DROP = 1e-4
-"""Drop across a needed resistance that counts as none [V]."""
 _CLOSE = 1e-7
 """A step after which, convergence being quadratic, the next would be below rounding."""
 
@@ -53,20 +56,45 @@ def matrix(rows: Any, shape: tuple[int, ...]) -> Array:
     return np.stack([vector(row, shape) for row in rows], axis=-2)
 
 
-def solve(
-    step: Callable[..., Any],
-    unknowns: tuple[str, ...],
-    arguments: Mapping[str, Any],
-    start: Start,
-) -> tuple[Array, ...]:
-    """Return the unknowns at which the loops hold; nan where Newton's method finds none.
+@dataclass(frozen=True)
+class System:
+    """Equations to be solved.
+
+    Attributes
+    ----------
+    step : takes unknowns and quantities, returns the change of each unknown in one
+        step of Newton's method
+    unknowns : their names; those of logarithms begin with 'log_', others are volts
+    """
+
+    step: Callable[..., Any]
+    unknowns: tuple[str, ...]
+
+    @property
+    def logs(self) -> tuple[bool, ...]:
+        """Which unknowns are logarithms."""
+        return tuple(name.startswith("log_") for name in self.unknowns)
+
+
+def taken(block: Block, where: Any) -> dict[str, Any]:
+    """Return some points of a block, by a mask or by indices."""
+    return {name: v if np.ndim(v) == 0 else v[where] for name, v in block.items()}
+
+
+def settled(value: Any, change: Any) -> Any:
+    """Say of each point whether a step is so small that it was the last."""
+    return np.abs(change) <= _CLOSE * (1 + np.abs(value))
+
+
+def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tuple[Array, ...]:
+    """Return the unknowns at which the loops hold, nan where there are none.
 
     Parameters
     ----------
-    step : takes unknowns and quantities, returns the change of each unknown
-    unknowns : their names; those of logarithms begin with 'log_'
+    system : the equations
     arguments : quantities by name, broadcastable arrays
     start : first guess of the unknowns from a block of quantities
+    rescue : for points at which the first guess leads nowhere
     """
     shape = shape_of(*arguments.values())
     size = int(np.prod(shape))
@@ -74,124 +102,49 @@ def solve(
         name: value if value.ndim == 0 else np.broadcast_to(value, shape).reshape(-1)
         for name, value in arguments.items()
     }
-    answers = [np.empty(size) for _ in unknowns]
-    logs = [name.startswith("log_") for name in unknowns]
+    answers = [np.empty(size) for _ in system.unknowns]
     for first in range(0, size, _BLOCK):
-        block = {
-            name: value if value.ndim == 0 else value[first : first + _BLOCK]
-            for name, value in flat.items()
-        }
-        count = min(_BLOCK, size - first)
-        found = _solve_block(step, logs, block, start(block), (count,))
+        last = min(first + _BLOCK, size)
+        block = {n: v if v.ndim == 0 else v[first:last] for n, v in flat.items()}
+        found = _solve_block(system, block, start, rescue, last - first)
         for answer, value in zip(answers, found, strict=True):
-            answer[first : first + count] = value
+            answer[first:last] = value
     return tuple(answer.reshape(shape) for answer in answers)
 
 
-def through(
-    step: Callable[..., Any], unknowns: tuple[str, ...], plain: Mapping[str, float], start: Start
-) -> Start:
-    """Return a start that first solves with some quantities set to plain values."""
-    logs = [name.startswith("log_") for name in unknowns]
-
-    def guess(block: Mapping[str, Any]) -> tuple[Any, ...]:
-        simple = {**block, **{name: v for name, v in plain.items() if name in block}}
-        return tuple(_solve_block(step, logs, simple, start(block), shape_of(*block.values())))
-
-    return guess
-
-
 def _solve_block(
-    step: Callable[..., Any],
-    logs: list[bool],
-    block: Mapping[str, Any],
-    start: tuple[Any, ...],
-    shape: tuple[int, ...],
+    system: System, block: Block, start: Start, rescue: Rescue, count: int
 ) -> list[Array]:
-    values = [np.array(np.broadcast_to(value, shape), dtype=float) for value in start]
+    values = [np.array(np.broadcast_to(guess, count), dtype=float) for guess in start(block)]
     with np.errstate(all="ignore"):
-        for _ in range(_STEPS):
-            largest: Any = 0.0
-            for k, change in enumerate(step(*values, **block)):
-                if logs[k]:
-                    # minimum and maximum keep nan, which marks a point without a solution
-                    change = np.minimum(np.maximum(change, -_REACH), _REACH)  # noqa: PLW2901
-                values[k] += change
-                largest = np.maximum(largest, np.abs(change))
-            open_points = largest > _CLOSE
-            if not open_points.any():
-                break
-        else:
-            for value in values:
-                value[np.broadcast_to(open_points, shape)] = np.nan
+        on_the_way = _iterate(system, block, values, _FIRST_STEPS)
+        if on_the_way.any():
+            where = np.flatnonzero(on_the_way)
+            some = [value[where] for value in values]
+            lost = _iterate(system, taken(block, where), some, _STEPS)
+            for value, own in zip(values, some, strict=True):
+                value[where] = np.where(lost, np.nan, own)
+        lost = np.isnan(sum(values))
+        if lost.any():
+            where = np.flatnonzero(lost)
+            for value, own in zip(values, rescue(taken(block, where), where.size), strict=True):
+                value[where] = own
     return values
 
 
-@dataclass(frozen=True)
-class Pin:
-    """A circuit whose output is pinned by the resistance of one slot.
-
-    Attributes
-    ----------
-    partials, outputs, unknowns : of the circuit, see `tcopt.solve.Numerics`
-    position, resistance : of the slot's resistance among the quantities, and its name
-    output : what the last current is to be [A]
-    """
-
-    partials: Callable[..., Any]
-    outputs: Callable[..., Any]
-    unknowns: tuple[str, ...]
-    position: int
-    resistance: str
-    output: Array
-
-
-def solve_pinned(pin: Pin, arguments: Mapping[str, Any], start: Pinned) -> Pinned:
-    """Return the unknowns, and the resistance [ohm] with which the output is what it is pinned to.
-
-    The loops are linear in the resistance, which may come out negative; nan
-    where none is found.
-
-    Parameters
-    ----------
-    pin : the circuit, the slot, the output
-    arguments : all other quantities
-    start : first guess
-    """
-    output, unknowns, position = pin.output, pin.unknowns, pin.position
-    partials, outputs, resistance_name = pin.partials, pin.outputs, pin.resistance
-    shape = np.broadcast_shapes(output.shape, shape_of(*arguments.values()))
-    wanted = np.log(np.broadcast_to(output, shape))
-    values = [np.array(np.broadcast_to(v, shape), dtype=float) for v in start[0]]
-    resistance = np.array(np.broadcast_to(start[1], shape), dtype=float)
-    logs = [name.startswith("log_") for name in unknowns]
-    n = len(unknowns)
-    settled = np.zeros(shape, dtype=bool)
-    with np.errstate(all="ignore"):
-        for _ in range(_STEPS):
-            filled = {**arguments, resistance_name: resistance}
-            loops, by_unknown, by_quantity = partials(*values, **filled)
-            log_currents, own, _ = outputs(*values, **filled)
-            jacobian = np.zeros((*shape, n + 1, n + 1))
-            jacobian[..., :n, :n] = matrix(by_unknown, shape)
-            jacobian[..., :n, n] = vector([row[position] for row in by_quantity], shape)
-            jacobian[..., n, :n] = vector(own[-1], shape)
-            right = vector([*loops, log_currents[-1] - wanted], shape)
-            bad = ~np.isfinite(jacobian).all(axis=(-1, -2)) | ~np.isfinite(right).all(axis=-1)
-            bad = bad | (np.linalg.det(np.where(bad[..., None, None], 0, jacobian)) == 0)
-            jacobian[bad] = np.eye(n + 1)
-            right[bad] = np.nan
-            change = -np.linalg.solve(jacobian, right[..., None])[..., 0]
-            largest = np.zeros(shape)
-            for k in range(n):
-                move = change[..., k]
-                if logs[k]:
-                    move = np.minimum(np.maximum(move, -_REACH), _REACH)
-                values[k] = values[k] + move
-                largest = np.maximum(largest, np.abs(move))
-            resistance = resistance + change[..., n]
-            relative = np.abs(change[..., n]) / (np.abs(resistance) + _SMALL_DROP / output)
-            settled = ~(np.maximum(largest, relative) > _CLOSE)
-            if settled.all():
-                break
-    return tuple(values), np.where(settled, resistance, np.nan)
+def _iterate(system: System, block: Block, values: list[Array], steps: int) -> Array:
+    """Take steps in place; return which points are still on their way."""
+    logs = system.logs
+    there: Any = False
+    for _ in range(steps):
+        there = True
+        for k, change in enumerate(system.step(*values, **block)):
+            if logs[k]:
+                # minimum and maximum keep nan, which marks a point that has left the domain
+                change = np.minimum(np.maximum(change, -REACH), REACH)  # noqa: PLW2901
+            values[k] += change
+            there = there & settled(values[k], change)
+        lost = np.isnan(values[0])
+        if np.all(there | lost):
+            break
+    return np.broadcast_to(~(there | lost), values[0].shape)

@@ -121,12 +121,10 @@ class Circuit:
     def control(self, current: Any, area: Any, emitter: Any, across: Any) -> Any:
         """Base or gate voltage to ground of a transistor whose emitter or source is lifted.
 
-        ``across``: collector to emitter, or drain to source. A diode-connected transistor
-        with less than nothing across it is off; it is followed there without Early effect.
+        ``across``: collector to emitter, or drain to source. Below nothing the laws do not
+        hold; to find that out they are followed there without Early effect.
         """
         factor = 1 + across * self.per_V_A
-        if factor <= 0:
-            return NEVER
         q = self.q
         if current <= 0:
             return -NEVER
@@ -184,7 +182,12 @@ class Circuit:
     def output(self, current: Any, resistor: Any = 0) -> Any:
         """Control voltage to ground of the output transistor."""
         emitter = self.emitter_current(current) * resistor
-        return self.control(current, self.q["N"], emitter, self.q.get("V_out", 0) - emitter)
+        return self.output_control(current, self.q["N"], emitter)
+
+    def output_control(self, current: Any, area: Any, emitter: Any) -> Any:
+        """The same from the voltage of its emitter."""
+        self.across_output = self.q["V_out"] - emitter
+        return self.control(current, area, emitter, max(self.across_output, 0))
 
 
 def _mirror(c: Circuit, feed: str) -> dict[str, Any]:
@@ -317,7 +320,7 @@ def _over_resistor(c: Circuit, slot: str) -> dict[str, Any]:
         """Control voltage, V_CE of the first transistor, and the drop."""
         J_1 = J - (0 if c.mos else c.from_input * c.base(J))
         drop = (c.emitter_current(J) - c.base(J_1)) * q[slot]
-        across = c.control(J, 1, drop, q["V_out"] - drop) + c.above(c.base(J))
+        across = c.output_control(J, 1, drop) + c.above(c.base(J))
         return c.control(J_1, 1, 0, max(across, 0)), across, drop
 
     def loop(J: Any) -> Any:
@@ -365,6 +368,8 @@ def _roots(topology: str, feed: str, device: str, quantities: Quantities) -> dic
         found = _CIRCUITS[topology](circuit, feed)
     except OverflowError as error:
         raise NoSolution(str(error)) from error
+    if circuit.per_V_A > 0:
+        found["V_CE"] = circuit.across_output
     if any(not value > 0 for value in found.values()):
         raise NoSolution(str(found))
     return circuit.roots

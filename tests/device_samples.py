@@ -30,6 +30,8 @@ DEVICE_CASES = tuple(
 
 _K_PER_Q = 1.380649e-23 / 1.602176634e-19
 _SMALL = 1e-3
+_LIFTING = ("R_output", "R_core", "R_source", "R_base", "R_gate")
+"""Resistors between the output transistor and ground, or larger than those."""
 _CURRENTS = (1e-9, 1e-2)
 _INVERSION = (1e-4, 1e4)
 
@@ -134,7 +136,8 @@ def drawn(topology: str, feed: str, device: str, count: int, seed: int) -> dict[
     if device == "bipolar":
         q["inverse_beta"] = draw.or_not(q["inverse_beta"])
     q["inverse_V_A"] = draw.or_not(1 / draw.log(2, 300))
-    q["V_out"] = draw.log(0.1, 30)
+    lift = I_out * sum(q.get(name, 0.0) for name in _LIFTING)
+    q["V_out"] = draw.or_not(lift, 0.97) + draw.log(0.05, 30)
     q["I_L"] = draw.or_not(draw.log(1e-18, 1e-12) * 2 ** ((T - 300) / 10))
     q["I_others"] = draw.or_not(draw.log(1e-4, 0.3) * I_in * q.get("inverse_beta", 0.0), 0.5)
     q["I_given"] = I_in

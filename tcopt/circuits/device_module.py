@@ -2,7 +2,9 @@
 
 Currents are solved for in their logarithms, voltages as they are. ``step``
 holds the solution of the linear system of one Newton step in closed form, so
-that a million points are solved by array arithmetic alone.
+that a million points are solved by array arithmetic alone. ``pin_`` functions
+are the same for a resistance that takes the place of the output current among
+the unknowns.
 """
 
 from __future__ import annotations
@@ -88,12 +90,26 @@ def partials_source(
     return function(name, summary, [*(x.name for x in own), *quantities], body)
 
 
-def _step_source(
-    residuals: Sequence[sp.Expr], unknowns: Sequence[sp.Symbol], quantities: Sequence[str]
+def _values_source(
+    name: str,
+    summary: str,
+    expressions: Sequence[sp.Expr],
+    unknowns: Sequence[sp.Symbol],
+    quantities: Sequence[str],
 ) -> str:
-    """Return ``step``: the change of each unknown in one Newton step, by elimination in symbols."""
-    in_logs = [_in_logs(r, unknowns) for r in residuals]
-    own = [_solved_for(u) for u in unknowns]
+    """Return a function of expressions alone."""
+    body, results = assigned([_in_logs(e, unknowns) for e in expressions])
+    body.append(f"return {tuple_text([text(r) for r in results])}")
+    return function(name, summary, [*(_solved_for(u).name for u in unknowns), *quantities], body)
+
+
+def _step_source(
+    in_logs: Sequence[sp.Expr],
+    own: Sequence[sp.Symbol],
+    arguments: Sequence[str],
+    name: str = "step",
+) -> str:
+    """Return the change of each of ``own`` in one Newton step, by elimination in symbols."""
     n = len(own)
     slopes = [[sp.diff(r, x) for x in own] for r in in_logs]
     body, results = assigned([*in_logs, *(item for row in slopes for item in row)])
@@ -102,16 +118,52 @@ def _step_source(
         if value.is_number:
             stand_ins.append(value)
             continue
-        name = f"f{k}" if k < n else f"a{(k - n) // n}{(k - n) % n}"
-        body.append(f"{name} = {text(value)}")
-        stand_ins.append(sp.Symbol(name, real=True))
+        part = f"f{k}" if k < n else f"a{(k - n) // n}{(k - n) % n}"
+        body.append(f"{part} = {text(value)}")
+        stand_ins.append(sp.Symbol(part, real=True))
     matrix = sp.Matrix(n, n, stand_ins[n:])
     solution = -(matrix.adjugate() * sp.Matrix(stand_ins[:n])) / matrix.det()
     more, changes = assigned(list(solution), prefix="y")
     body += more
     body.append(f"return {tuple_text([text(c) for c in changes])}")
     summary = "Return the change of each unknown in one Newton step."
-    return function("step", summary, [*(x.name for x in own), *quantities], body)
+    return function(name, summary, [*(x.name for x in own), *arguments], body)
+
+
+def _pins_source(
+    circuit: Circuit,
+    feed: str,
+    residuals: Sequence[sp.Expr],
+    unknowns: Sequence[sp.Symbol],
+    output: tuple[sp.Symbol, sp.Expr],
+    quantities: Sequence[str],
+) -> str:
+    """Return what solves for a slot's resistance when the output is given.
+
+    ``output``: the last current's unknown, and the current itself. That is the
+    unknown plus what does not depend on any, so it gives the unknown at once.
+    """
+    last, current = output
+    apart = sp.expand(current - last)
+    if apart.free_symbols & set(unknowns):
+        raise AssertionError(f"{circuit.topology}: the output is more than its unknown")
+    pinned = sp.log(Terms().symbol("I_out") - apart)
+    source = function(
+        "pinned",
+        f"Return {_solved_for(last).name} from the output current.",
+        ["I_out", *(q for q in quantities if not q.startswith("R_"))],
+        [f"return {text(pinned)}"],
+    )
+    in_logs = [_in_logs(r, unknowns) for r in residuals]
+    pins: list[str] = []
+    for slot in circuit.slots_for(feed):
+        resistance = Terms().resistance(slot.name)
+        own = [*(_solved_for(u) for u in unknowns if u != last), resistance]
+        arguments = [_solved_for(last).name, *(q for q in quantities if q != resistance.name)]
+        source += _step_source(in_logs, own, arguments, f"pin_{slot.name}")
+        names = tuple_text([repr(u.name) for u in own])
+        pins.append(f'"{slot.name}": (pin_{slot.name}, {names})')
+    return source + f"\n\nPINS = {{{', '.join(pins)}}}\n"
 
 
 def device_module(circuit: Circuit, feed: str, device: Device) -> str:
@@ -121,7 +173,18 @@ def device_module(circuit: Circuit, feed: str, device: Device) -> str:
     unknowns = [terms.unknowns[loop.unknown] for loop in loops]
     outputs = [finite(terms.currents[name]) for name in circuit.unknowns]
     quantities = quantity_names([*residuals, *outputs], set(unknowns))
-    source = _step_source(residuals, unknowns, quantities)
+    in_logs = [_in_logs(r, unknowns) for r in residuals]
+    source = _values_source(
+        "loops", "Return what is left of each loop.", residuals, unknowns, quantities
+    )
+    source += _values_source(
+        "across",
+        "Return the collector-emitter voltages that have an Early effect [V].",
+        [sp.expand(finite(voltage)) for voltage in terms.across],
+        unknowns,
+        quantities,
+    )
+    source += _step_source(in_logs, [_solved_for(u) for u in unknowns], quantities)
     source += partials_source(residuals, unknowns, quantities)
     source += partials_source(
         [sp.log(current) for current in outputs],
@@ -130,6 +193,9 @@ def device_module(circuit: Circuit, feed: str, device: Device) -> str:
         "outputs",
         "Return the logarithm of each current, its partials by unknown, and by quantity.",
     )
+    last = circuit.unknowns[-1]
+    output = (terms.unknowns[last], outputs[-1])
+    source += _pins_source(circuit, feed, residuals, unknowns, output, quantities)
     constants = (
         f"\nCURRENTS = {tuple_text([repr(n) for n in circuit.unknowns])}"
         f"\nUNKNOWNS = {tuple_text([repr(_solved_for(u).name) for u in unknowns])}"

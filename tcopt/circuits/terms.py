@@ -60,6 +60,7 @@ class Terms:
     unknowns : what the loops are solved for: a junction current for each named
         current, and voltages of diode-connected transistors where they matter
     extra : loops that the devices bring with them
+    across : collector-emitter or drain-source voltages that have an Early effect
     observed : what else a solution is asked for, by its name in the nomenclature
     """
 
@@ -70,6 +71,7 @@ class Terms:
         self.currents: dict[str, sp.Expr] = {}
         self.unknowns: dict[str, sp.Symbol] = {}
         self.extra: list[Loop] = []
+        self.across: list[sp.Expr] = []
         self.observed: dict[str, sp.Expr] = {}
 
     def observe(
@@ -152,7 +154,9 @@ class Terms:
         lifted = emitter * emitter_resistor + raised
         factor: sp.Expr = sp.Integer(1)
         if to_output and self.device is not Device.IDEAL:
-            factor = 1 + (self.symbol("V_out") - lifted) / self.symbol("V_A")
+            across = self.symbol("V_out") - lifted
+            self.across.append(across)
+            factor = 1 + across / self.symbol("V_A")
         return self._made(junction, area, lifted, emitter, factor)
 
     def diode(
@@ -208,6 +212,7 @@ class Terms:
         across = collector - lifted
         if "V_D" not in self.unknowns:
             self.unknowns["V_D"] = V_D
+            self.across.append(V_D)
             self.extra.append(Loop("V_D", V_D - across))
         return made
 

@@ -14,6 +14,21 @@ UNKNOWNS = ('log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_spec', 'M', 'N', 'R_core', 'V_T', 'V_TH', 'V_out', 'inverse_V_A', 'n', 'n_S')
 
 
+def loops(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_out)
+    x1 = R_core*x0
+    x2 = 1/sqrt(I_spec)
+    x3 = 2*V_T*n
+    x4 = x3*log_expm1(x2*sqrt(I_L*M*N - I_L + M*x0)/sqrt(V_D*inverse_V_A + 1))
+    return (-n_S*x1 - x3*log_expm1(x2*sqrt((V_out*inverse_V_A - inverse_V_A*x1 + 1)**(-1.0))*exp((1/2)*log_J_out)/sqrt(N)) + x4, V_D - V_TH - x4)
+
+
+def across(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (-R_core*exp(log_J_out) + V_out, V_D)
+
+
 def step(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
@@ -129,3 +144,36 @@ def outputs(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, M: Any, N: Any, R_c
         ((x0*x3, 0),),
         ((x4, 0, 0, x4, 0, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_spec: Any, M: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_core(V_D: Any, R_core: Any, log_J_out: Any, I_L: Any, I_spec: Any, M: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = n_S*x0
+    x2 = V_D*inverse_V_A + 1
+    x3 = 1/sqrt(I_spec)
+    x4 = x3*sqrt(I_L*M*N - I_L + M*x0)
+    x5 = x4/sqrt(x2)
+    x6 = V_T*n
+    x7 = 2*x6
+    x8 = x7*log_expm1(x5)
+    x9 = (-R_core*inverse_V_A*x0 + V_out*inverse_V_A + 1)**(-1.0)
+    x10 = x3*sqrt(x9)/sqrt(N)
+    x11 = x10*exp((1/2)*log_J_out)
+    x12 = inverse_V_A*x6
+    x13 = x12*x4*(1 + expm1(x5)**(-1.0))/x2**(3/2)
+    f0 = -R_core*x1 - x7*log_expm1(x11) + x8
+    f1 = V_D - V_TH - x8
+    a00 = -x13
+    a01 = -x1 - x10*x12*x9*(1 + expm1(x11)**(-1.0))*exp((3/2)*log_J_out)
+    a10 = x13 + 1
+    y0 = a10**(-1.0)
+    return (-f1*y0, -y0*(-a00*f1 + a10*f0)/a01)
+
+
+PINS = {"core": (pin_core, ('V_D', 'R_core'))}

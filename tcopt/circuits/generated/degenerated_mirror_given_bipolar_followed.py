@@ -12,6 +12,28 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_given', 'I_others', 'N', 'R_input', 'R_output', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_in)
+    x1 = 1 + inverse_beta**(-1.0)
+    x2 = x1**(-1.0)
+    x3 = inverse_beta*x0
+    x4 = exp(log_J_out)
+    x5 = inverse_beta*x4
+    x6 = V_T*log_J_in
+    x7 = R_input*x0
+    x8 = R_output*x4
+    x9 = V_T*log(V_D*inverse_V_A + 1)
+    x10 = inverse_V_A*x8
+    return (I_L - I_given + I_others*x2 + x0 + x2*x3 + x2*x5, -V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_beta*x10 - x10 + 1) + inverse_beta*x7 - inverse_beta*x8 + x6 + x7 - x8 - x9, V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x1) - V_T*log(I_others + x3 + x5) - x6 + x9)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_output*exp(log_J_out)
+    return (V_out - inverse_beta*x0 - x0, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = 1 + inverse_beta**(-1.0)
@@ -116,3 +138,78 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_o
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, 0, x7, 0, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_input(log_J_in: Any, V_D: Any, R_input: Any, log_J_out: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_output: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = 1 + inverse_beta**(-1.0)
+    x1 = x0**(-1.0)
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = exp(log_J_in)
+    x5 = inverse_beta*x4
+    x6 = x1*x5 + x4
+    x7 = V_T*log_J_in
+    x8 = R_output*x2
+    x9 = inverse_V_A*x8
+    x10 = V_D*inverse_V_A + 1
+    x11 = V_T*log(x10)
+    x12 = R_input*x4
+    x13 = inverse_beta*x12 + x12
+    x14 = I_others + x3 + x5
+    x15 = V_T*inverse_V_A/x10
+    f0 = I_L - I_given + I_others*x1 + x1*x3 + x6
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_beta*x9 - x9 + 1) - inverse_beta*x8 - x11 + x13 + x7 - x8
+    f2 = V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x0) - V_T*log(x14) + x11 - x7
+    a00 = x6
+    a10 = V_T + x13
+    a11 = -x15
+    a12 = x4 + x5
+    a20 = -V_T - V_T*x5/x14
+    a21 = x15 + 1
+    y0 = a00**(-1.0)
+    y1 = a00*f2
+    y2 = y0/(a12*a21)
+    return (-f0*y0, -y2*(-a12*a20*f0 + a12*y1), -y2*(a00*a21*f1 - a11*y1 - f0*(a10*a21 - a11*a20)))
+
+
+def pin_output(log_J_in: Any, V_D: Any, R_output: Any, log_J_out: Any, I_L: Any, I_given: Any, I_others: Any, N: Any, R_input: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = 1 + inverse_beta**(-1.0)
+    x1 = x0**(-1.0)
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = exp(log_J_in)
+    x5 = inverse_beta*x4
+    x6 = x1*x5 + x4
+    x7 = V_T*log_J_in
+    x8 = R_output*x2
+    x9 = inverse_V_A*x8
+    x10 = V_out*inverse_V_A - inverse_beta*x9 - x9 + 1
+    x11 = V_D*inverse_V_A + 1
+    x12 = V_T*log(x11)
+    x13 = R_input*x4
+    x14 = inverse_beta*x13 + x13
+    x15 = I_others + x3 + x5
+    x16 = V_T*inverse_V_A/x11
+    f0 = I_L - I_given + I_others*x1 + x1*x3 + x6
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x10) - inverse_beta*x8 - x12 + x14 + x7 - x8
+    f2 = V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x0) - V_T*log(x15) + x12 - x7
+    a00 = x6
+    a10 = V_T + x14
+    a11 = -x16
+    a12 = V_T*(-inverse_V_A*x2 - inverse_V_A*x3)/x10 - x2 - x3
+    a20 = -V_T - V_T*x5/x15
+    a21 = x16 + 1
+    y0 = a00**(-1.0)
+    y1 = a00*f2
+    y2 = y0/(a12*a21)
+    return (-f0*y0, -y2*(-a12*a20*f0 + a12*y1), -y2*(a00*a21*f1 - a11*y1 - f0*(a10*a21 - a11*a20)))
+
+
+PINS = {"input": (pin_input, ('log_J_in', 'V_D', 'R_input')), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'))}

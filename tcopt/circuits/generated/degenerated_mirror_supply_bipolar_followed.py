@@ -12,6 +12,33 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_others', 'N', 'R_feed', 'R_input', 'R_output', 'V_CC', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_in)
+    x1 = R_feed*x0
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = V_T*log(I_others + inverse_beta*x0 + x3)
+    x5 = log(inverse_beta)
+    x6 = 1 + inverse_beta**(-1.0)
+    x7 = log(x6)
+    x8 = x6**(-1.0)
+    x9 = R_feed*x8
+    x10 = V_T*log_J_in
+    x11 = R_input*x0
+    x12 = V_T*log(V_D*inverse_V_A + 1)
+    x13 = inverse_beta*x11 + x10 + x11 - x12
+    x14 = R_output*x2
+    x15 = R_output*x3
+    return (-I_L*R_feed - I_others*x9 + V_CC + 2*V_T*log_I_S + V_T*x5 + V_T*x7 - inverse_beta*x1*x8 - x1 - x13 - x3*x9 - x4, -V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_V_A*x14 - inverse_V_A*x15 + 1) + x13 - x14 - x15, V_D + 2*V_T*log_I_S + V_T*x5 + V_T*x7 - x10 + x12 - x4)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_output*exp(log_J_out)
+    return (V_out - inverse_beta*x0 - x0, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
@@ -140,3 +167,139 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_others: Any, N:
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_others: Any, N: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_feed(log_J_in: Any, V_D: Any, R_feed: Any, log_J_out: Any, I_L: Any, I_others: Any, N: Any, R_input: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = inverse_beta*x0
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = I_others + x1 + x3
+    x5 = V_T*log(x4)
+    x6 = log(inverse_beta)
+    x7 = 1 + inverse_beta**(-1.0)
+    x8 = log(x7)
+    x9 = x7**(-1.0)
+    x10 = I_others*x9
+    x11 = x3*x9
+    x12 = R_feed*x0
+    x13 = R_input*x0
+    x14 = inverse_beta*x13 + x13
+    x15 = inverse_beta*x12*x9 + x12 + x14
+    x16 = V_T*log_J_in
+    x17 = V_D*inverse_V_A + 1
+    x18 = V_T*log(x17)
+    x19 = x16 - x18
+    x20 = R_output*x2
+    x21 = R_output*x3
+    x22 = V_T*x1/x4 + V_T
+    x23 = V_T*inverse_V_A/x17
+    f0 = -I_L*R_feed - R_feed*x10 - R_feed*x11 + V_CC + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x15 - x19 - x5
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_V_A*x20 - inverse_V_A*x21 + 1) + x14 + x19 - x20 - x21
+    f2 = V_D + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x16 + x18 - x5
+    a00 = -x15 - x22
+    a01 = x23
+    a02 = -I_L - x0 - x1*x9 - x10 - x11
+    a10 = V_T + x14
+    a11 = -x23
+    a20 = -x22
+    a21 = x23 + 1
+    y0 = a02*f2
+    y1 = a10*a21
+    y2 = a11*a20
+    y3 = (a02*y1 - a02*y2)**(-1.0)
+    return (y3*(-a02*a21*f1 + a11*y0), y3*(a02*a20*f1 - a10*y0), y3*(-f0*(y1 - y2) - f1*(-a00*a21 + a01*a20) - f2*(a00*a11 - a01*a10)))
+
+
+def pin_input(log_J_in: Any, V_D: Any, R_input: Any, log_J_out: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_output: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = inverse_beta*x0
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = I_others + x1 + x3
+    x5 = V_T*log(x4)
+    x6 = log(inverse_beta)
+    x7 = 1 + inverse_beta**(-1.0)
+    x8 = log(x7)
+    x9 = x7**(-1.0)
+    x10 = R_feed*x9
+    x11 = R_feed*x0
+    x12 = R_input*x0
+    x13 = inverse_beta*x12 + x12
+    x14 = inverse_beta*x11*x9 + x11 + x13
+    x15 = V_T*log_J_in
+    x16 = V_D*inverse_V_A + 1
+    x17 = V_T*log(x16)
+    x18 = x15 - x17
+    x19 = R_output*x2
+    x20 = R_output*x3
+    x21 = V_T*x1/x4 + V_T
+    x22 = V_T*inverse_V_A/x16
+    x23 = x0 + x1
+    f0 = -I_L*R_feed - I_others*x10 + V_CC + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x10*x3 - x14 - x18 - x5
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_V_A*x19 - inverse_V_A*x20 + 1) + x13 + x18 - x19 - x20
+    f2 = V_D + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x15 + x17 - x5
+    a00 = -x14 - x21
+    a01 = x22
+    a02 = -x23
+    a10 = V_T + x13
+    a11 = -x22
+    a12 = x23
+    a20 = -x21
+    a21 = x22 + 1
+    y0 = a02*a11
+    y1 = a00*a12
+    y2 = (a01*a12*a20 + a02*a10*a21 - a20*y0 - a21*y1)**(-1.0)
+    return (y2*(-a02*a21*f1 + a12*a21*f0 - f2*(a01*a12 - y0)), y2*(a02*a20*f1 - a12*a20*f0 - f2*(a02*a10 - y1)), y2*(-f0*(a10*a21 - a11*a20) - f1*(-a00*a21 + a01*a20) - f2*(a00*a11 - a01*a10)))
+
+
+def pin_output(log_J_in: Any, V_D: Any, R_output: Any, log_J_out: Any, I_L: Any, I_others: Any, N: Any, R_feed: Any, R_input: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = inverse_beta*x0
+    x2 = exp(log_J_out)
+    x3 = inverse_beta*x2
+    x4 = I_others + x1 + x3
+    x5 = V_T*log(x4)
+    x6 = log(inverse_beta)
+    x7 = 1 + inverse_beta**(-1.0)
+    x8 = log(x7)
+    x9 = x7**(-1.0)
+    x10 = R_feed*x9
+    x11 = R_feed*x0
+    x12 = R_input*x0
+    x13 = inverse_beta*x12 + x12
+    x14 = inverse_beta*x11*x9 + x11 + x13
+    x15 = V_T*log_J_in
+    x16 = V_D*inverse_V_A + 1
+    x17 = V_T*log(x16)
+    x18 = x15 - x17
+    x19 = R_output*x2
+    x20 = R_output*x3
+    x21 = V_out*inverse_V_A - inverse_V_A*x19 - inverse_V_A*x20 + 1
+    x22 = V_T*x1/x4 + V_T
+    x23 = V_T*inverse_V_A/x16
+    f0 = -I_L*R_feed - I_others*x10 + V_CC + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x10*x3 - x14 - x18 - x5
+    f1 = -V_T*log_J_out + V_T*log(N) + V_T*log(x21) + x13 + x18 - x19 - x20
+    f2 = V_D + 2*V_T*log_I_S + V_T*x6 + V_T*x8 - x15 + x17 - x5
+    a00 = -x14 - x22
+    a01 = x23
+    a10 = V_T + x13
+    a11 = -x23
+    a12 = V_T*(-inverse_V_A*x2 - inverse_V_A*x3)/x21 - x2 - x3
+    a20 = -x22
+    a21 = x23 + 1
+    y0 = a12*f2
+    y1 = a00*a21
+    y2 = (a01*a12*a20 - a12*y1)**(-1.0)
+    return (y2*(-a01*y0 + a12*a21*f0), y2*(a00*y0 - a12*a20*f0), y2*(-f0*(a10*a21 - a11*a20) - f1*(a01*a20 - y1) - f2*(a00*a11 - a01*a10)))
+
+
+PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed')), "input": (pin_input, ('log_J_in', 'V_D', 'R_input')), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'))}

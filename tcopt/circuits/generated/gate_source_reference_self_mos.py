@@ -14,6 +14,19 @@ UNKNOWNS = ('log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_spec', 'R_gate', 'V_T', 'V_TH', 'V_out', 'inverse_V_A', 'n', 'n_S')
 
 
+def loops(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, R_gate: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = R_gate*exp(log_J_out)
+    x1 = exp((1/2)*log_J_out)/sqrt(I_spec)
+    x2 = 2*V_T*n
+    return (V_TH - x0 + x2*log_expm1(x1/sqrt(V_D*inverse_V_A + 1)), V_D - V_TH - n_S*x0 - x2*log_expm1(x1*sqrt((V_out*inverse_V_A - inverse_V_A*x0 + 1)**(-1.0))))
+
+
+def across(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, R_gate: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (-R_gate*exp(log_J_out) + V_out, V_D)
+
+
 def step(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, R_gate: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = R_gate*exp(log_J_out)
@@ -101,3 +114,34 @@ def outputs(log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, R_gate: Any, V_T: A
         ((x0*x2, 0),),
         ((I_L*x2, 0, 0, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_spec: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L + I_out)
+
+
+def pin_gate(V_D: Any, R_gate: Any, log_J_out: Any, I_L: Any, I_spec: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = R_gate*x0
+    x2 = V_D*inverse_V_A + 1
+    x3 = 1/sqrt(I_spec)
+    x4 = x3*exp((1/2)*log_J_out)
+    x5 = x4/sqrt(x2)
+    x6 = V_T*n
+    x7 = 2*x6
+    x8 = (V_out*inverse_V_A - inverse_V_A*x1 + 1)**(-1.0)
+    x9 = sqrt(x8)
+    x10 = x4*x9
+    x11 = inverse_V_A*x6
+    f0 = V_TH - x1 + x7*log_expm1(x5)
+    f1 = V_D - V_TH - n_S*x1 - x7*log_expm1(x10)
+    a00 = -x11*x4*(1 + expm1(x5)**(-1.0))/x2**(3/2)
+    a01 = -x0
+    a11 = -n_S*x0 - x11*x3*x8*x9*(1 + expm1(x10)**(-1.0))*exp((3/2)*log_J_out)
+    y0 = (a00*a11 - a01)**(-1.0)
+    return (y0*(a01*f1 - a11*f0), y0*(-a00*f1 + f0))
+
+
+PINS = {"gate": (pin_gate, ('V_D', 'R_gate'))}

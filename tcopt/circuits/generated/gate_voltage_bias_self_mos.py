@@ -14,6 +14,17 @@ UNKNOWNS = ('log_J_out',)
 QUANTITIES = ('I_L', 'I_spec', 'N', 'R_source', 'V_T', 'V_TH', 'V_out', 'V_ref', 'inverse_V_A', 'n', 'n_S')
 
 
+def loops(log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_source: Any, V_T: Any, V_TH: Any, V_out: Any, V_ref: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = R_source*exp(log_J_out)
+    return (-2*V_T*n*log_expm1(sqrt((V_out*inverse_V_A - inverse_V_A*x0 + 1)**(-1.0))*exp((1/2)*log_J_out)/(sqrt(I_spec)*sqrt(N))) - V_TH + V_ref - n_S*x0,)
+
+
+def across(log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_source: Any, V_T: Any, V_TH: Any, V_out: Any, V_ref: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (-R_source*exp(log_J_out) + V_out,)
+
+
 def step(log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_source: Any, V_T: Any, V_TH: Any, V_out: Any, V_ref: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = R_source*exp(log_J_out)
@@ -81,3 +92,24 @@ def outputs(log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_source: Any, V_T: A
         ((x0*x3,),),
         ((x4, 0, x4, 0, 0, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_spec: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, V_ref: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_source(R_source: Any, log_J_out: Any, I_L: Any, I_spec: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, V_ref: Any, inverse_V_A: Any, n: Any, n_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = n_S*x0
+    x2 = (-R_source*inverse_V_A*x0 + V_out*inverse_V_A + 1)**(-1.0)
+    x3 = sqrt(x2)/(sqrt(I_spec)*sqrt(N))
+    x4 = x3*exp((1/2)*log_J_out)
+    x5 = V_T*n
+    f0 = -R_source*x1 - V_TH + V_ref - 2*x5*log_expm1(x4)
+    a00 = -inverse_V_A*x2*x3*x5*(1 + expm1(x4)**(-1.0))*exp((3/2)*log_J_out) - x1
+    return (-f0/a00,)
+
+
+PINS = {"source": (pin_source, ('R_source',))}

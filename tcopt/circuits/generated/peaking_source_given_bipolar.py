@@ -12,6 +12,21 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_given', 'N', 'R_drop', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_in)
+    x1 = inverse_beta*exp(log_J_out)
+    x2 = V_T*log_J_out
+    x3 = log(N)
+    x4 = log(V_out*inverse_V_A + 1)
+    return (I_L - I_given + inverse_beta*x0 + x0 + x1, -I_L*R_drop - R_drop*x0 - R_drop*x1 + V_T*log_J_in + V_T*x3 + V_T*x4 - V_T*log(V_D*inverse_V_A + 1) - x2, V_D + V_T*log_I_S + V_T*x3 + V_T*x4 - x2)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (V_out, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: Any, R_drop: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = inverse_beta*exp(log_J_out)
@@ -88,3 +103,33 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, N: 
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_given: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, I_given: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = inverse_beta*x0 + x0
+    x2 = inverse_beta*exp(log_J_out)
+    x3 = I_L + x2
+    x4 = V_T*log_J_out
+    x5 = R_drop*x0
+    x6 = log(N)
+    x7 = V_D*inverse_V_A + 1
+    x8 = log(V_out*inverse_V_A + 1)
+    f0 = -I_given + x1 + x3
+    f1 = -I_L*R_drop - R_drop*x2 + V_T*log_J_in + V_T*x6 + V_T*x8 - V_T*log(x7) - x4 - x5
+    f2 = V_D + V_T*log_I_S + V_T*x6 + V_T*x8 - x4
+    a00 = x1
+    a10 = V_T - x5
+    a11 = -V_T*inverse_V_A/x7
+    a12 = -x0 - x3
+    y0 = a00**(-1.0)
+    return (-f0*y0, -f2, -y0*(-a00*a11*f2 + a00*f1 - a10*f0)/a12)
+
+
+PINS = {"drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}

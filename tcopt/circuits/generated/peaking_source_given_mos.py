@@ -14,6 +14,19 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_given', 'I_spec', 'N', 'R_drop', 'V_T', 'V_TH', 'V_out', 'inverse_V_A', 'n')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_spec: Any, N: Any, R_drop: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_in)
+    x1 = 1/sqrt(I_spec)
+    x2 = 2*V_T*n*log_expm1(x1*exp((1/2)*log_J_out)/(sqrt(N)*sqrt(V_out*inverse_V_A + 1)))
+    return (I_L - I_given + x0, -I_L*R_drop - R_drop*x0 + 2*V_T*n*log_expm1(x1*exp((1/2)*log_J_in)/sqrt(V_D*inverse_V_A + 1)) - x2, V_D - V_TH - x2)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_spec: Any, N: Any, R_drop: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (V_out, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_spec: Any, N: Any, R_drop: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_in)
@@ -113,3 +126,36 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_given: Any, I_s
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, 0, x7, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_given: Any, I_spec: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, I_given: Any, I_spec: Any, N: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = I_L + x0
+    x2 = R_drop*x0
+    x3 = V_D*inverse_V_A + 1
+    x4 = 1/sqrt(x3)
+    x5 = 1/sqrt(I_spec)
+    x6 = exp((1/2)*log_J_in)
+    x7 = x5*x6
+    x8 = x4*x7
+    x9 = V_T*n
+    x10 = 2*x9*log_expm1(x5*exp((1/2)*log_J_out)/(sqrt(N)*sqrt(V_out*inverse_V_A + 1)))
+    x11 = 1 + expm1(x8)**(-1.0)
+    f0 = -I_given + x1
+    f1 = -I_L*R_drop + 2*V_T*n*log_expm1(x8) - x10 - x2
+    f2 = V_D - V_TH - x10
+    a00 = x0
+    a10 = V_T*n*x11*x4*x5*x6 - x2
+    a11 = -inverse_V_A*x11*x7*x9/x3**(3/2)
+    a12 = -x1
+    y0 = a00**(-1.0)
+    return (-f0*y0, -f2, -y0*(-a00*a11*f2 + a00*f1 - a10*f0)/a12)
+
+
+PINS = {"drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}

@@ -12,6 +12,24 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'N', 'R_drop', 'R_feed', 'V_CC', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = V_T*log_J_in
+    x1 = exp(log_J_in)
+    x2 = R_feed*x1
+    x3 = inverse_beta*exp(log_J_out)
+    x4 = V_T*log(V_D*inverse_V_A + 1)
+    x5 = V_T*log_J_out
+    x6 = log(N)
+    x7 = log(V_out*inverse_V_A + 1)
+    return (-I_L*R_feed - R_feed*x3 + V_CC + V_T*log_I_S - inverse_beta*x2 - x0 - x2 + x4, -I_L*R_drop - R_drop*x1 - R_drop*x3 + V_T*x6 + V_T*x7 + x0 - x4 - x5, V_D + V_T*log_I_S + V_T*x6 + V_T*x7 - x5)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (V_out, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = V_T*log_J_in
@@ -100,3 +118,63 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, N: Any, R_drop: A
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, x7, 0, 0, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, N: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_feed(log_J_in: Any, V_D: Any, R_feed: Any, log_J_out: Any, I_L: Any, N: Any, R_drop: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = V_T*log_J_in
+    x1 = V_D*inverse_V_A + 1
+    x2 = V_T*log(x1)
+    x3 = inverse_beta*exp(log_J_out)
+    x4 = exp(log_J_in)
+    x5 = R_feed*x4
+    x6 = inverse_beta*x5 + x5
+    x7 = V_T*log_J_out
+    x8 = R_drop*x4
+    x9 = log(N)
+    x10 = log(V_out*inverse_V_A + 1)
+    x11 = V_T*inverse_V_A/x1
+    f0 = -I_L*R_feed - R_feed*x3 + V_CC + V_T*log_I_S - x0 + x2 - x6
+    f1 = -I_L*R_drop - R_drop*x3 + V_T*x10 + V_T*x9 + x0 - x2 - x7 - x8
+    f2 = V_D + V_T*log_I_S + V_T*x10 + V_T*x9 - x7
+    a00 = -V_T - x6
+    a01 = x11
+    a02 = -I_L - inverse_beta*x4 - x3 - x4
+    a10 = V_T - x8
+    a11 = -x11
+    y0 = 1/(a02*a10)
+    return (y0*(a02*a11*f2 - a02*f1), -f2, y0*(a00*f1 - a10*f0 - f2*(a00*a11 - a01*a10)))
+
+
+def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, N: Any, R_feed: Any, V_CC: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = V_T*log_J_in
+    x1 = V_D*inverse_V_A + 1
+    x2 = V_T*log(x1)
+    x3 = inverse_beta*exp(log_J_out)
+    x4 = exp(log_J_in)
+    x5 = R_feed*x4
+    x6 = inverse_beta*x5 + x5
+    x7 = V_T*log_J_out
+    x8 = R_drop*x4
+    x9 = log(N)
+    x10 = log(V_out*inverse_V_A + 1)
+    x11 = V_T*inverse_V_A/x1
+    f0 = -I_L*R_feed - R_feed*x3 + V_CC + V_T*log_I_S - x0 + x2 - x6
+    f1 = -I_L*R_drop - R_drop*x3 + V_T*x10 + V_T*x9 + x0 - x2 - x7 - x8
+    f2 = V_D + V_T*log_I_S + V_T*x10 + V_T*x9 - x7
+    a00 = -V_T - x6
+    a01 = x11
+    a10 = V_T - x8
+    a11 = -x11
+    a12 = -I_L - x3 - x4
+    y0 = 1/(a00*a12)
+    return (-y0*(-a01*a12*f2 + a12*f0), -f2, -y0*(a00*f1 - a10*f0 - f2*(a00*a11 - a01*a10)))
+
+
+PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed')), "drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}

@@ -14,6 +14,21 @@ UNKNOWNS = ('log_J_in', 'log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'I_spec', 'N', 'R_drop', 'R_feed', 'V_CC', 'V_T', 'V_TH', 'V_out', 'inverse_V_A', 'n')
 
 
+def loops(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_in)
+    x1 = 1/sqrt(I_spec)
+    x2 = 2*V_T*n
+    x3 = x2*log_expm1(x1*exp((1/2)*log_J_in)/sqrt(V_D*inverse_V_A + 1))
+    x4 = x2*log_expm1(x1*exp((1/2)*log_J_out)/(sqrt(N)*sqrt(V_out*inverse_V_A + 1)))
+    return (-I_L*R_feed - R_feed*x0 + V_CC - V_TH - x3, -I_L*R_drop - R_drop*x0 + x3 - x4, V_D - V_TH - x4)
+
+
+def across(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    return (V_out, V_D)
+
+
 def step(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, N: Any, R_drop: Any, R_feed: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_in)
@@ -122,3 +137,67 @@ def outputs(log_J_in: Any, log_J_out: Any, V_D: Any, I_L: Any, I_spec: Any, N: A
         ((x0*x5, 0, 0), (0, x2*x6, 0)),
         ((I_L*x5, 0, 0, 0, 0, 0, 0, 0, 0, 0, 0), (x7, 0, x7, 0, 0, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, I_spec: Any, N: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_feed(log_J_in: Any, V_D: Any, R_feed: Any, log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_drop: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = R_feed*x0
+    x2 = V_D*inverse_V_A + 1
+    x3 = 1/sqrt(I_spec)
+    x4 = x3*exp((1/2)*log_J_in)
+    x5 = x4/sqrt(x2)
+    x6 = V_T*n
+    x7 = 2*x6
+    x8 = x7*log_expm1(x5)
+    x9 = R_drop*x0
+    x10 = x7*log_expm1(x3*exp((1/2)*log_J_out)/(sqrt(N)*sqrt(V_out*inverse_V_A + 1)))
+    x11 = x6*(1 + expm1(x5)**(-1.0))
+    x12 = x11*x5
+    x13 = inverse_V_A*x11*x4/x2**(3/2)
+    f0 = -I_L*R_feed + V_CC - V_TH - x1 - x8
+    f1 = -I_L*R_drop - x10 + x8 - x9
+    f2 = V_D - V_TH - x10
+    a00 = -x1 - x12
+    a01 = x13
+    a02 = -I_L - x0
+    a10 = x12 - x9
+    a11 = -x13
+    y0 = 1/(a02*a10)
+    return (y0*(a02*a11*f2 - a02*f1), -f2, y0*(a00*f1 - a10*f0 - f2*(a00*a11 - a01*a10)))
+
+
+def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, I_spec: Any, N: Any, R_feed: Any, V_CC: Any, V_T: Any, V_TH: Any, V_out: Any, inverse_V_A: Any, n: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_in)
+    x1 = R_feed*x0
+    x2 = V_D*inverse_V_A + 1
+    x3 = 1/sqrt(I_spec)
+    x4 = x3*exp((1/2)*log_J_in)
+    x5 = x4/sqrt(x2)
+    x6 = V_T*n
+    x7 = 2*x6
+    x8 = x7*log_expm1(x5)
+    x9 = R_drop*x0
+    x10 = x7*log_expm1(x3*exp((1/2)*log_J_out)/(sqrt(N)*sqrt(V_out*inverse_V_A + 1)))
+    x11 = x6*(1 + expm1(x5)**(-1.0))
+    x12 = x11*x5
+    x13 = inverse_V_A*x11*x4/x2**(3/2)
+    f0 = -I_L*R_feed + V_CC - V_TH - x1 - x8
+    f1 = -I_L*R_drop - x10 + x8 - x9
+    f2 = V_D - V_TH - x10
+    a00 = -x1 - x12
+    a01 = x13
+    a10 = x12 - x9
+    a11 = -x13
+    a12 = -I_L - x0
+    y0 = 1/(a00*a12)
+    return (-y0*(-a01*a12*f2 + a12*f0), -f2, -y0*(a00*f1 - a10*f0 - f2*(a00*a11 - a01*a10)))
+
+
+PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed')), "drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}

@@ -12,6 +12,22 @@ UNKNOWNS = ('log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'M', 'N', 'R_core', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_out)
+    x1 = R_core*x0
+    x2 = inverse_beta*x0
+    x3 = R_core*x2
+    x4 = V_T*log(inverse_beta + 1) + V_T*log(V_D*inverse_V_A + 1) - V_T*log(I_L*M*N - I_L + M*x0 - x2)
+    return (-V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_V_A*x1 - inverse_V_A*x3 + 1) - x1 - x3 - x4, V_D + V_T*log_I_S + x4)
+
+
+def across(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_core*exp(log_J_out)
+    return (V_out - inverse_beta*x0 - x0, V_D)
+
+
 def step(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
@@ -89,3 +105,30 @@ def outputs(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T
         ((x0*x3, 0),),
         ((x4, 0, x4, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, M: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_core(V_D: Any, R_core: Any, log_J_out: Any, I_L: Any, M: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = R_core*x0
+    x2 = inverse_beta*x0
+    x3 = R_core*x2
+    x4 = V_out*inverse_V_A - inverse_V_A*x1 - inverse_V_A*x3 + 1
+    x5 = V_D*inverse_V_A + 1
+    x6 = V_T*log(x5) + V_T*log(inverse_beta + 1) - V_T*log(I_L*M*N - I_L + M*x0 - x2)
+    x7 = V_T*inverse_V_A/x5
+    f0 = -V_T*log_J_out + V_T*log(N) + V_T*log(x4) - x1 - x3 - x6
+    f1 = V_D + V_T*log_I_S + x6
+    a00 = -x7
+    a01 = V_T*(-inverse_V_A*x0 - inverse_V_A*x2)/x4 - x0 - x2
+    a10 = x7 + 1
+    y0 = a10**(-1.0)
+    return (-f1*y0, -y0*(-a00*f1 + a10*f0)/a01)
+
+
+PINS = {"core": (pin_core, ('V_D', 'R_core'))}

@@ -12,6 +12,30 @@ UNKNOWNS = ('log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'M', 'N', 'R_core', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_out)
+    x1 = R_core*x0
+    x2 = inverse_V_A*x1
+    x3 = inverse_beta**(-1.0)
+    x4 = x3 + 1
+    x5 = x4**(-1.0)
+    x6 = inverse_beta*x5 + 1
+    x7 = M*x0
+    x8 = I_L*M*N
+    x9 = x3 + inverse_beta**(-2.0)
+    x10 = V_T*log(x6) + V_T*log(V_D*inverse_V_A + 1) - V_T*log(-I_L - x0/x9 + x7 + x8)
+    x11 = inverse_beta*x0
+    x12 = inverse_beta/x6
+    return (-V_T*log_J_out + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_beta*x2 - x2 + 1) - inverse_beta*x1 - x1 - x10, V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x4) - V_T*log(-I_L*x12 + x11 - x11/(x5 + x9 + (inverse_beta + 1)**(-1.0)) + x12*x7 + x12*x8) + x10)
+
+
+def across(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_core*exp(log_J_out)
+    return (V_out - inverse_beta*x0 - x0, V_D)
+
+
 def step(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_out)
@@ -247,3 +271,38 @@ def outputs(log_J_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T
         ((x0*x3, 0),),
         ((x4, 0, x4, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, M: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L*N + I_out)
+
+
+def pin_core(V_D: Any, R_core: Any, log_J_out: Any, I_L: Any, M: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_out)
+    x1 = R_core*x0
+    x2 = inverse_V_A*x1
+    x3 = V_out*inverse_V_A - inverse_beta*x2 - x2 + 1
+    x4 = V_D*inverse_V_A + 1
+    x5 = inverse_beta**(-1.0)
+    x6 = x5 + 1
+    x7 = x6**(-1.0)
+    x8 = inverse_beta*x7 + 1
+    x9 = M*x0
+    x10 = I_L*M*N
+    x11 = x5 + inverse_beta**(-2.0)
+    x12 = V_T*log(x4) + V_T*log(x8) - V_T*log(-I_L - x0/x11 + x10 + x9)
+    x13 = inverse_beta*x0
+    x14 = inverse_beta/x8
+    x15 = V_T*inverse_V_A/x4
+    f0 = -V_T*log_J_out + V_T*log(N) + V_T*log(x3) - inverse_beta*x1 - x1 - x12
+    f1 = V_D + 2*V_T*log_I_S + V_T*log(inverse_beta) + V_T*log(x6) - V_T*log(-I_L*x14 + x10*x14 + x13 - x13/(x11 + x7 + (inverse_beta + 1)**(-1.0)) + x14*x9) + x12
+    a00 = -x15
+    a01 = V_T*(-inverse_V_A*x0 - inverse_V_A*x13)/x3 - x0 - x13
+    a10 = x15 + 1
+    y0 = a10**(-1.0)
+    return (-f1*y0, -y0*(-a00*f1 + a10*f0)/a01)
+
+
+PINS = {"core": (pin_core, ('V_D', 'R_core'))}

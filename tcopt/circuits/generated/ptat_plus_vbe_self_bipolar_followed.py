@@ -12,6 +12,31 @@ UNKNOWNS = ('log_J_core', 'log_I_out', 'V_D')
 QUANTITIES = ('I_L', 'M', 'N', 'R_base', 'R_core', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_core: Any, log_I_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = exp(log_J_core)
+    x1 = R_core*x0
+    x2 = inverse_V_A*x1
+    x3 = inverse_beta**(-1.0)
+    x4 = x3 + 1
+    x5 = x4**(-1.0)
+    x6 = inverse_beta*x5 + 1
+    x7 = M*x0
+    x8 = I_L*M*N
+    x9 = x3 + inverse_beta**(-2.0)
+    x10 = V_T*log(x6) + V_T*log(V_D*inverse_V_A + 1) - V_T*log(-I_L - x0/x9 + x7 + x8)
+    x11 = V_T*log_I_S
+    x12 = inverse_beta*x0
+    x13 = inverse_beta/x6
+    return (-V_T*log_J_core + V_T*log(N) + V_T*log(V_out*inverse_V_A - inverse_beta*x2 - x2 + 1) - inverse_beta*x1 - x1 - x10, I_L*N*R_base + R_base*x0 - R_base*exp(log_I_out) - x10 - x11, V_D + V_T*log(inverse_beta) + V_T*log(x4) - V_T*log(-I_L*x13 + x12 - x12/(x5 + x9 + (inverse_beta + 1)**(-1.0)) + x13*x7 + x13*x8) + x10 + 2*x11)
+
+
+def across(log_J_core: Any, log_I_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_core*exp(log_J_core)
+    return (V_out - inverse_beta*x0 - x0, V_D)
+
+
 def step(log_J_core: Any, log_I_out: Any, V_D: Any, I_L: Any, M: Any, N: Any, R_base: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = exp(log_J_core)
@@ -261,3 +286,101 @@ def outputs(log_J_core: Any, log_I_out: Any, V_D: Any, I_L: Any, M: Any, N: Any,
         ((x0*x3, 0, 0), (0, 1, 0)),
         ((x4, 0, x4, 0, 0, 0, 0, 0, 0, 0), (0, 0, 0, 0, 0, 0, 0, 0, 0, 0)),
     )
+
+
+def pinned(I_out: Any, I_L: Any, M: Any, N: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_I_out from the output current."""
+    return log(I_out)
+
+
+def pin_core(log_J_core: Any, V_D: Any, R_core: Any, log_I_out: Any, I_L: Any, M: Any, N: Any, R_base: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_core)
+    x1 = R_core*x0
+    x2 = inverse_V_A*x1
+    x3 = inverse_beta*x2 + x2
+    x4 = V_out*inverse_V_A - x3 + 1
+    x5 = inverse_beta*x1 + x1
+    x6 = V_D*inverse_V_A + 1
+    x7 = inverse_beta**(-1.0)
+    x8 = x7 + 1
+    x9 = x8**(-1.0)
+    x10 = inverse_beta*x9 + 1
+    x11 = I_L*M*N
+    x12 = M*x0
+    x13 = x7 + inverse_beta**(-2.0)
+    x14 = -x0/x13 + x12
+    x15 = -I_L + x11 + x14
+    x16 = V_T*log(x10) - V_T*log(x15) + V_T*log(x6)
+    x17 = V_T*log_I_S
+    x18 = inverse_beta/x10
+    x19 = inverse_beta*x0
+    x20 = x12*x18 + x19 - x19/(x13 + x9 + (inverse_beta + 1)**(-1.0))
+    x21 = -I_L*x18 + x11*x18 + x20
+    x22 = x4**(-1.0)
+    x23 = V_T*x14/x15
+    x24 = V_T*inverse_V_A/x6
+    x25 = -x24
+    f0 = -V_T*log_J_core + V_T*log(N) + V_T*log(x4) - x16 - x5
+    f1 = I_L*N*R_base + R_base*x0 - R_base*exp(log_I_out) - x16 - x17
+    f2 = V_D + V_T*log(inverse_beta) - V_T*log(x21) + V_T*log(x8) + x16 + 2*x17
+    a00 = -V_T*x22*x3 - V_T + x23 - x5
+    a01 = x25
+    a02 = V_T*x22*(-inverse_V_A*x0 - inverse_V_A*x19) - x0 - x19
+    a10 = R_base*x0 + x23
+    a11 = x25
+    a20 = -V_T*x20/x21 - x23
+    a21 = x24 + 1
+    y0 = a02*f2
+    y1 = a10*a21
+    y2 = a11*a20
+    y3 = (a02*y1 - a02*y2)**(-1.0)
+    return (y3*(-a02*a21*f1 + a11*y0), y3*(a02*a20*f1 - a10*y0), y3*(-f0*(y1 - y2) - f1*(-a00*a21 + a01*a20) - f2*(a00*a11 - a01*a10)))
+
+
+def pin_base(log_J_core: Any, V_D: Any, R_base: Any, log_I_out: Any, I_L: Any, M: Any, N: Any, R_core: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = exp(log_J_core)
+    x1 = R_core*x0
+    x2 = inverse_V_A*x1
+    x3 = inverse_beta*x2 + x2
+    x4 = V_out*inverse_V_A - x3 + 1
+    x5 = inverse_beta*x1 + x1
+    x6 = V_D*inverse_V_A + 1
+    x7 = inverse_beta**(-1.0)
+    x8 = x7 + 1
+    x9 = x8**(-1.0)
+    x10 = inverse_beta*x9 + 1
+    x11 = I_L*N
+    x12 = M*x11
+    x13 = M*x0
+    x14 = x7 + inverse_beta**(-2.0)
+    x15 = -x0/x14 + x13
+    x16 = -I_L + x12 + x15
+    x17 = V_T*log(x10) - V_T*log(x16) + V_T*log(x6)
+    x18 = V_T*log_I_S
+    x19 = exp(log_I_out)
+    x20 = inverse_beta/x10
+    x21 = inverse_beta*x0
+    x22 = x13*x20 + x21 - x21/(x14 + x9 + (inverse_beta + 1)**(-1.0))
+    x23 = -I_L*x20 + x12*x20 + x22
+    x24 = V_T*x15/x16
+    x25 = V_T*inverse_V_A/x6
+    x26 = -x25
+    f0 = -V_T*log_J_core + V_T*log(N) + V_T*log(x4) - x17 - x5
+    f1 = I_L*N*R_base + R_base*x0 - R_base*x19 - x17 - x18
+    f2 = V_D + V_T*log(inverse_beta) - V_T*log(x23) + V_T*log(x8) + x17 + 2*x18
+    a00 = -V_T*x3/x4 - V_T + x24 - x5
+    a01 = x26
+    a10 = R_base*x0 + x24
+    a11 = x26
+    a12 = x0 + x11 - x19
+    a20 = -V_T*x22/x23 - x24
+    a21 = x25 + 1
+    y0 = a12*f2
+    y1 = a00*a21
+    y2 = (a01*a12*a20 - a12*y1)**(-1.0)
+    return (y2*(-a01*y0 + a12*a21*f0), y2*(a00*y0 - a12*a20*f0), y2*(-f0*(a10*a21 - a11*a20) - f1*(a01*a20 - y1) - f2*(a00*a11 - a01*a10)))
+
+
+PINS = {"core": (pin_core, ('log_J_core', 'V_D', 'R_core')), "base": (pin_base, ('log_J_core', 'V_D', 'R_base'))}

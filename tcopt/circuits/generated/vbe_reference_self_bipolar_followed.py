@@ -12,6 +12,23 @@ UNKNOWNS = ('log_J_out', 'V_D')
 QUANTITIES = ('I_L', 'R_base', 'V_T', 'V_out', 'inverse_V_A', 'inverse_beta', 'log_I_S')
 
 
+def loops(log_J_out: Any, V_D: Any, I_L: Any, R_base: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return what is left of each loop."""
+    x0 = V_T*log_I_S
+    x1 = exp(log_J_out)
+    x2 = R_base*x1
+    x3 = inverse_beta**(-1.0)
+    x4 = x1/(x3 + inverse_beta**(-2.0))
+    x5 = R_base*inverse_beta*x4
+    return (V_T*log(x1 - x4) - V_T*log(V_D*inverse_V_A + 1) - x0 - x2 - x5, V_D - 2*V_T*log_J_out + V_T*log(x3 + 1) + V_T*log(V_out*inverse_V_A - inverse_V_A*x2 - inverse_V_A*x5 + 1) + 2*x0 - x2 - x5)
+
+
+def across(log_J_out: Any, V_D: Any, I_L: Any, R_base: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the collector-emitter voltages that have an Early effect [V]."""
+    x0 = R_base*exp(log_J_out)
+    return (V_out - inverse_beta*x0/(inverse_beta**(-1.0) + inverse_beta**(-2.0)) - x0, V_D)
+
+
 def step(log_J_out: Any, V_D: Any, I_L: Any, R_base: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
     """Return the change of each unknown in one Newton step."""
     x0 = V_T*log_I_S
@@ -95,3 +112,32 @@ def outputs(log_J_out: Any, V_D: Any, I_L: Any, R_base: Any, V_T: Any, V_out: An
         ((x0*x2, 0),),
         ((I_L*x2, 0, 0, 0, 0, 0, 0),),
     )
+
+
+def pinned(I_out: Any, I_L: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return log_J_out from the output current."""
+    return log(-I_L + I_out)
+
+
+def pin_base(V_D: Any, R_base: Any, log_J_out: Any, I_L: Any, V_T: Any, V_out: Any, inverse_V_A: Any, inverse_beta: Any, log_I_S: Any) -> Any:
+    """Return the change of each unknown in one Newton step."""
+    x0 = V_T*log_I_S
+    x1 = exp(log_J_out)
+    x2 = R_base*x1
+    x3 = V_D*inverse_V_A + 1
+    x4 = inverse_beta**(-1.0)
+    x5 = x1/(x4 + inverse_beta**(-2.0))
+    x6 = inverse_beta*x5
+    x7 = R_base*x6
+    x8 = V_out*inverse_V_A - inverse_V_A*x2 - inverse_V_A*x7 + 1
+    x9 = x1 + x6
+    f0 = -V_T*log(x3) + V_T*log(x1 - x5) - x0 - x2 - x7
+    f1 = V_D - 2*V_T*log_J_out + V_T*log(x8) + V_T*log(x4 + 1) + 2*x0 - x2 - x7
+    a00 = -V_T*inverse_V_A/x3
+    a01 = -x9
+    a11 = V_T*(-inverse_V_A*x1 - inverse_V_A*x6)/x8 - x9
+    y0 = (a00*a11 - a01)**(-1.0)
+    return (y0*(a01*f1 - a11*f0), y0*(-a00*f1 + f0))
+
+
+PINS = {"base": (pin_base, ('V_D', 'R_base'))}

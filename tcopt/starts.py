@@ -1,0 +1,113 @@
+"""First guesses for Newton's method: from ideal transistors, or from a look round."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from typing import Any
+
+import numpy as np
+
+from tcopt.arrays import Array
+from tcopt.newton import Block, Start
+
+__all__ = ["from_currents", "looked_round"]
+
+_TOP, _BOTTOM = 5.0, -45.0
+"""Logarithms of currents [A] between which is looked: 150 A to 3e-20 A."""
+_COARSE = 10.0
+_HALVINGS = 2
+_EARLY = "inverse_V_A"
+_LEAST_VOLTAGE = 0.1
+
+
+def from_currents(
+    unknowns: tuple[str, ...],
+    currents: Callable[[Block], Mapping[str, Any]],
+    diode_voltage: float,
+) -> Start:
+    """Return a guess from currents that are about right, such as those of ideal transistors.
+
+    Parameters
+    ----------
+    unknowns : their names
+    currents : the currents [A] of a block, by name
+    diode_voltage : of the diode-connected transistor [V]
+    """
+
+    def guess(block: Block) -> tuple[Any, ...]:
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
+            found = currents(block)
+            return tuple(
+                np.log(found[name.removeprefix("log_").replace("J_", "I_")])
+                if name.startswith("log_")
+                else diode_voltage
+                for name in unknowns
+            )
+
+    return guess
+
+
+def looked_round(
+    loops: Callable[..., Any],
+    unknowns: tuple[str, ...],
+    halvings: int = _HALVINGS,
+    *,
+    with_early_effect: bool = False,
+) -> Start:
+    """Return a guess just above the largest current at which each loop in turn holds.
+
+    Without base currents and Early effect a loop depends on its own current and
+    those before it alone, and beyond its solution it bends away from it, so that
+    Newton's method from above gets there in a few steps.
+
+    Parameters
+    ----------
+    loops : takes unknowns and quantities, returns what is left of each loop
+    unknowns : their names, in the order of the loops
+    halvings : of the interval in which the loop changes sign
+    with_early_effect : or without, which the loops then do not bend by
+    """
+
+    def guess(block: Block) -> tuple[Any, ...]:
+        plain = dict(block)
+        if _EARLY in block and not with_early_effect:
+            plain[_EARLY] = 0.0
+        threshold = np.maximum(block.get("V_TH", _LEAST_VOLTAGE), _LEAST_VOLTAGE)
+        values: list[Any] = [0.0 if n.startswith("log_") else threshold for n in unknowns]
+        with np.errstate(all="ignore"):
+            for k, name in enumerate(unknowns):
+                if name.startswith("log_"):
+                    values[k] = _from_above(loops, values, k, plain, halvings)
+                else:
+                    left = loops(*values, **plain)[k]
+                    values[k] = np.maximum(threshold - left, _LEAST_VOLTAGE)
+        return tuple(values)
+
+    return guess
+
+
+def _from_above(
+    loops: Callable[..., Any], values: list[Any], k: int, block: Block, halvings: int
+) -> Array:
+    """Return a logarithm above the largest at which loop k changes sign, or near where it might."""
+
+    def left(x: Any) -> Any:
+        return loops(*values[:k], x, *values[k + 1 :], **block)[k]
+
+    at_top = left(_TOP)
+    above = at_top > 0
+    high: Any = np.full(np.shape(at_top), np.nan)
+    nearest, least = np.full(np.shape(at_top), _TOP), np.abs(at_top)
+    for x in np.arange(_TOP - _COARSE, _BOTTOM - _COARSE / 2, -_COARSE):
+        here = left(x)
+        high = np.where(np.isnan(high) & ((here > 0) != above), x + _COARSE, high)
+        nearest = np.where(np.abs(here) < least, x, nearest)
+        least = np.fmin(np.abs(here), least)
+    missed = np.isnan(high)
+    high = np.where(missed, np.minimum(nearest + _COARSE, _TOP), high)
+    step = _COARSE
+    for _ in range(halvings):
+        step /= 2
+        same = (left(high - step) > 0) == above
+        high = np.where(same & ~missed, high - step, high)
+    return np.asarray(high)
