@@ -247,7 +247,7 @@ def test_feed_that_a_circuit_has_not() -> None:
 
 
 def test_value_of_no_symbol() -> None:
-    with pytest.raises(ValueError, match="found 'R_extra'; accepted: .*R_core"):
+    with pytest.raises(ValueError, match=r"found 'R_extra'; accepted: .*R_core"):
         with_numbers(derived(("ptat core", "self")), {"T_0": 300.0, "R_extra": 1.0})
 
 

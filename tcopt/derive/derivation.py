@@ -13,12 +13,13 @@ import sympy as sp
 from tcopt.circuits import CIRCUITS, Circuit, Loop
 from tcopt.circuits.closed_form import Kind, Root, forward, need
 from tcopt.circuits.terms import Device, Terms, kinds_of
-from tcopt.derive.chain import Chain, Equality, solve_chain, substituted, tidy
+from tcopt.derive.chain import Chain, Equality, solve_chain, substituted
 from tcopt.derive.names import INVERSE_T, INVERSE_T_0, coefficient, positive, with_temperatures
 from tcopt.derive.orders import Orders
 from tcopt.derive.pinned import bends, perfect_resistors, rules
 from tcopt.derive.reading import combined, over, sides
 from tcopt.derive.temperature import coefficient_law, ruled_by_law
+from tcopt.derive.tidying import factored
 from tcopt.symbols import resistance_name
 
 __all__ = ["Derivation", "derive", "shorted"]
@@ -58,6 +59,12 @@ class Derivation:
     def given(self) -> tuple[str, ...]:
         """Names of the quantities that have a TC1 and TC2 of their own."""
         return self._orders.given
+
+    @cached_property
+    def quantities(self) -> tuple[str, ...]:
+        """Names of all that stands in the loops, but for what is derived from it."""
+        made = set(self._orders.unknowns) - {*self.solved_for, self.circuit.unknowns[-1]}
+        return tuple(q for q in self._orders.quantities if q not in made)
 
     @cached_property
     def fitted(self) -> tuple[str, ...]:
@@ -134,7 +141,7 @@ class Derivation:
         for cause in causes:
             rates = {coefficient(q): int(q == cause) for q in [*causes, "V_T"]}
             equations = [sp.expand(e.subs(rates)) for e in orders.causes]
-            found[cause] = tidy(substituted(self._chain(equations, None)), factored=True)
+            found[cause] = factored(substituted(self._chain(equations, None)))
         return MappingProxyType(found)
 
     @cached_property

@@ -21,7 +21,7 @@ _UNITS = {
 
 def latex_of(note: Note) -> str:
     """Return the note as LaTeX, to be taken into a document with ``\\input``."""
-    parts = [rf"\section*{{{_plain(note.title)}}}", _plain(note.summary) + "."]
+    parts = [rf"\section*{{{_plain(note.title)}}}", _plain(note.summary)]
     for section in note.sections:
         parts += _section(section)
     parts += [r"\subsection*{Symbols}", r"\begin{tabular}{llll}"]

@@ -151,7 +151,7 @@ def _of_slots(circuit: Circuit) -> dict[str, Entry]:
     found = {}
     for slot in circuit.slots:
         R, current = resistance_name(slot.name), through(slot.name).name
-        found[R] = Entry(R, "ohm", f"resistance {slot.meaning}")
+        found[R] = Entry(R, "ohm", f"resistance: {slot.meaning}")
         found[current] = Entry(current, "A", f"current through {R}")
     return found
 

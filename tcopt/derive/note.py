@@ -9,6 +9,7 @@ import sympy as sp
 
 from tcopt.circuits import GIVEN, SELF, SUPPLY
 from tcopt.circuits.closed_form import Kind
+from tcopt.circuits.terms import Device
 from tcopt.derive.chain import Chain, Equality
 from tcopt.derive.derivation import Derivation
 from tcopt.derive.names import coefficient, described, positive, quantity_of, sensitivity
@@ -18,9 +19,16 @@ from tcopt.symbols import NOMENCLATURE, resistance_name
 __all__ = ["Line", "Note", "Remark", "Row", "Section", "note_of"]
 
 _FEEDS = {
-    SELF: "makes its own current",
-    GIVEN: "input: a given current",
-    SUPPLY: "input: a supply and a feed resistor",
+    SELF: "",
+    GIVEN: ", input: a given current",
+    SUPPLY: ", input: a supply and a feed resistor",
+}
+_DEVICES = {
+    Device.IDEAL: "Bipolar transistors are ideal",
+    Device.BIPOLAR: "Bipolar transistors have gain, Early effect and leakage",
+    Device.FOLLOWED: "Bipolar transistors have gain, Early effect and leakage; a follower feeds "
+    "their bases",
+    Device.MOS: "MOS transistors are in saturation, in any region of inversion",
 }
 
 
@@ -99,11 +107,16 @@ class _Scribe:
             sections.append(self.special_cases())
         at = "" if self.numbers is None else ", values at T_0"
         return Note(
-            title=f"{derivation.circuit.topology}, {_FEEDS[derivation.feed]}{shorts}{at}",
-            summary=derivation.circuit.summary,
+            title=f"{derivation.circuit.topology}{_FEEDS[derivation.feed]}{shorts}{at}",
+            summary=self.summary(),
             sections=tuple(sections),
             legend=self.legend(),
         )
+
+    def summary(self) -> str:
+        circuit = self.derivation.circuit
+        words = f"{circuit.summary[0].upper()}{circuit.summary[1:]}."
+        return f"{words} {_DEVICES[self.derivation.device]}." if circuit.devices else words
 
     def lines(
         self, chain: Iterable[Equality], shown: Iterable[Equality] = (), state: State | None = None
@@ -262,6 +275,12 @@ class _Scribe:
             items.append(Remark(shorts))
             items += self.lines(case.closed_form or (), self.derivation.closed_form or ())
             items += self.lines(case.first, self.derivation.first)
+            for words, rules in (("flat", case.flat), ("PTAT", case.ptat)):
+                before = (*self.derivation.first, *case.first)
+                found = [self.lines(chain, before) for chain in rules.values()]
+                # what takes more than one line follows from the rules above
+                short = [lines[0] for lines in found if len(lines) == 1]
+                items += [Remark(f"{shorts}, {words} output"), *short] if short else []
         return Section("Special cases", "Slots that may be left out are shorts.", tuple(items))
 
     def legend(self) -> tuple[Row, ...]:
@@ -342,7 +361,7 @@ def _families(prefixes: set[str]) -> list[Row]:
     ]
     found = [Row(name, NOMENCLATURE[unit].unit, meaning) for name, unit, meaning in rows]
     if "x" in prefixes:
-        found.append(Row("x", "1", "a voltage in units of V_T"))
+        found.append(Row("x", "1", "a voltage in units of V_T; x_slot is the drop over R_slot"))
     if "K" in prefixes:
         found.append(
             Row(

@@ -80,14 +80,13 @@ def expected_names(derivation: Derivation) -> tuple[str, ...]:
     else k T_0/q; the currents, else those of the closed form; ``I_target``,
     ``TC1_target``, ``TC2_target`` of the output that is wanted.
     """
-    quantities = {s.name for left, right in derivation.loops for s in (left + right).free_symbols}
-    names = {"T_0", "V_T", *derivation.solved_for, "I_out", *quantities, *_TARGET}
+    names = {"T_0", "V_T", *derivation.quantities, *_TARGET}
     names |= {coefficient(q, order).name for q in derivation.given for order in (1, 2)}
     names |= {resistance_name(slot) for slot in derivation.shorts}
     names |= {
         coefficient(resistance_name(slot), k).name for slot in derivation.shorts for k in (1, 2)
     }
-    if "I_S" in quantities:
+    if "I_S" in names:
         names |= {"V_G0", "eta"}
     return tuple(sorted(names))
 

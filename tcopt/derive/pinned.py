@@ -7,9 +7,10 @@ from types import MappingProxyType
 
 import sympy as sp
 
-from tcopt.derive.chain import Chain, Equality, solve_chain, tidy
+from tcopt.derive.chain import Chain, Equality, solve_chain
 from tcopt.derive.names import INVERSE_T_0, bend, coefficient, positive, with_temperatures
 from tcopt.derive.orders import Orders
+from tcopt.derive.tidying import tidy
 from tcopt.symbols import resistance_name
 
 __all__ = ["bends", "perfect_resistors", "rules"]

@@ -77,6 +77,7 @@ class _Source:
         derivation = self.derivation
         feed = "" if derivation.feed == "self" else f", input: {derivation.feed}"
         shorts = "".join(f", {resistance_name(slot)} = 0" for slot in derivation.shorts)
+        functions = [name for name in _NUMPY if f"{name}(" in body]
         imports = [f"from scipy.special import {name}" for name in _specials(body)]
         constants = ["from scipy.constants import e, k"] if "VOLT_PER_KELVIN" in body else []
         lines = [
@@ -91,8 +92,8 @@ class _Source:
             '"""',
             "",
             *(["from dataclasses import dataclass", ""] if "@dataclass" in body else []),
-            "import numpy as np",
-            f"from numpy import {', '.join(f for f in _NUMPY if f'{f}(' in body)}",
+            *(["import numpy as np"] if "np." in body else []),
+            *([f"from numpy import {', '.join(functions)}"] if functions else []),
             *constants,
             *imports,
             *(["", "VOLT_PER_KELVIN = k / e"] if constants else []),

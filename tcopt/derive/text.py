@@ -14,13 +14,15 @@ __all__ = ["equation_of", "text_of"]
 
 _WIDTH = 96
 _SHORT = 44
+_LONGEST_LEFT = 56
+_FEW = 2
 _INDENT = "    "
 _WRITER = Text()
 
 
 def text_of(note: Note) -> str:
     """Return the note as plain text."""
-    parts = [note.title, "=" * len(note.title), note.summary[0].upper() + note.summary[1:] + "."]
+    parts = [note.title, "=" * len(note.title), *wrap(note.summary, _WIDTH)]
     for section in note.sections:
         parts += ["", *_section(section)]
     return "\n".join([*parts, "", *_legend(note.legend)]) + "\n"
@@ -49,6 +51,9 @@ def _block(lines: Iterable[Line]) -> list[str]:
     width = max((len(left) for left in lefts if len(left) <= 16), default=0)
     found: list[str] = []
     for left, line in zip(lefts, lines, strict=True):
+        if len(left) > _LONGEST_LEFT:
+            found += [f"{_INDENT}{left}", *_equation("", line)]
+            continue
         equation = _equation(left.ljust(width), line)
         if found and len(equation) > 1:
             found.append("")
@@ -65,29 +70,33 @@ def _equation(left: str, line: Line) -> list[str]:
         return _stacked(head, "", line.right, "", value)
     if len(head + inline + value) <= _WIDTH:
         return [head + inline + value]
+    found = _broken(line.right, _WIDTH - len(head))
+    if len(found) <= _FEW and all(len(head + text) <= _WIDTH for text in found):
+        blank = " " * len(head)
+        return _closed([head + found[0], *(blank + more for more in found[1:])], value, len(head))
     terms = ordered(line.right)
-    long = [t for t in terms if _is_long_quotient(t)]
-    if len(long) == 1:
-        at = terms.index(long[0])
+    at = max(range(len(terms)), key=lambda k: _length_of_quotient(terms[k]))
+    if _length_of_quotient(terms[at]) > _SHORT:
         before = "".join(_WRITER.term(t, first=k == 0) for k, t in enumerate(terms[:at]))
         after = "".join(_WRITER.term(t, first=False) for t in terms[at + 1 :])
-        sign = "-" if is_negative(long[0]) else "+" if before else ""
+        negative = is_negative(terms[at])
+        sign = "-" if negative else "+" if before else ""
         before = f"{before} {sign} " if before else sign
-        quotient = without_sign(long[0]) if sign == "-" else long[0]
+        quotient = without_sign(terms[at]) if negative else terms[at]
         return _stacked(head, before, quotient, after, value)
-    found = _broken(line.right, _WIDTH - len(head))
     blank = " " * len(head)
     return _closed([head + found[0], *(blank + more for more in found[1:])], value, len(head))
 
 
-def _is_long_quotient(term: sp.Expr) -> bool:
+def _length_of_quotient(term: sp.Expr) -> int:
+    """Return how long a quotient with a sum above is when written; 0 for any other term."""
     above, below = fraction_of(term)
-    return above.has(sp.Add) and not below.is_number
+    return len(_WRITER.write(term)) if above.has(sp.Add) and not below.is_number else 0
 
 
 def _closed(lines: list[str], value: str, indent: int) -> list[str]:
     """Put the value behind the last line, or below it."""
-    if len(lines[-1] + value) <= _WIDTH:
+    if not value or len(lines[-1] + value) <= _WIDTH:
         return [*lines[:-1], lines[-1] + value]
     return [*lines, " " * (indent - 3) + value]
 

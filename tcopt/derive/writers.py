@@ -187,7 +187,7 @@ def ordered(total: sp.Expr) -> list[sp.Expr]:
 def without_sign(term: sp.Expr) -> sp.Expr:
     """Return the negative of a term, leaving its sums as they are."""
     number, rest = term.as_coeff_Mul()
-    return rest if number == -1 else sp.Mul(-number, rest, evaluate=False)
+    return rest if number == -1 else sp.Mul(-number, *sp.Mul.make_args(rest), evaluate=False)
 
 
 def fraction_of(expression: sp.Expr) -> tuple[sp.Expr, sp.Expr]:
