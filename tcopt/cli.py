@@ -8,7 +8,7 @@ from __future__ import annotations
 import sys
 from enum import StrEnum
 from pathlib import Path
-from typing import TYPE_CHECKING, Annotated, Any
+from typing import TYPE_CHECKING, Annotated, Any, NoReturn
 
 import typer
 from typer.core import TyperGroup
@@ -21,6 +21,8 @@ if TYPE_CHECKING:
     from rich.console import RenderableType
 
     from tcopt.assess import Verdict
+    from tcopt.check_cascade import CascadeVerdict
+    from tcopt.study import CascadeStudy
 
 __all__ = ["app", "main"]
 
@@ -138,7 +140,7 @@ def _answer(
         say(f"\nFiles written to {written}\n")
 
 
-def _exit(limit: Verdict | None) -> None:
+def _exit(limit: Verdict | CascadeVerdict | None) -> NoReturn:
     raise typer.Exit(MET if limit is None or limit.met else NOT_MET)
 
 
@@ -264,9 +266,11 @@ def design(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
     """
     from tcopt.mix import search  # noqa: PLC0415
     from tcopt.show.progress import progress  # noqa: PLC0415
-    from tcopt.study import load_study  # noqa: PLC0415
+    from tcopt.study import CascadeStudy, load_question  # noqa: PLC0415
 
-    question = load_study(study)
+    question = load_question(study)
+    if isinstance(question, CascadeStudy):
+        _design_several(question, study, as_json, out)
     with progress("Combinations") as report:
         result = search.design(question, report)
     if out is not None:
@@ -287,9 +291,12 @@ def check(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
     A design is finished when every resistor has its parts and every choice is a single value.
     """
     from tcopt import check as checking  # noqa: PLC0415
-    from tcopt.study import load_study  # noqa: PLC0415
+    from tcopt.study import CascadeStudy, load_question  # noqa: PLC0415
 
-    result = checking.check(load_study(study))
+    question = load_question(study)
+    if isinstance(question, CascadeStudy):
+        _check_several(question, study, as_json, out)
+    result = checking.check(question)
     if out is not None:
         from tcopt.show.folder import check_files, write_folder  # noqa: PLC0415
 
@@ -299,6 +306,44 @@ def check(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
 
     _answer(lambda: check_document(result), lambda: check_report(result), as_json, out)
     _exit(result.assessment.limit)
+
+
+def _design_several(
+    question: CascadeStudy, study: Path, as_json: bool, out: Path | None
+) -> NoReturn:
+    """Design several outputs of one reference branch."""
+    from tcopt.mix.cascade import design_cascade  # noqa: PLC0415
+    from tcopt.show import cascade as shown  # noqa: PLC0415
+    from tcopt.show.progress import progress  # noqa: PLC0415
+    from tcopt.show.tables.cascade import cascade_design_report  # noqa: PLC0415
+
+    with progress("Searches") as report:
+        result = design_cascade(question, report)
+    if out is not None:
+        from tcopt.show.folder import write_folder  # noqa: PLC0415
+
+        write_folder(out, shown.cascade_design_files(result, out), read=study)
+    document, table = shown.cascade_design_document, cascade_design_report
+    _answer(lambda: document(result), lambda: table(result), as_json, out)
+    _exit(result.winner.limit)
+
+
+def _check_several(
+    question: CascadeStudy, study: Path, as_json: bool, out: Path | None
+) -> NoReturn:
+    """Check several outputs of one reference branch."""
+    from tcopt.check_cascade import check_cascade  # noqa: PLC0415
+    from tcopt.show import cascade as shown  # noqa: PLC0415
+    from tcopt.show.tables.cascade import cascade_check_report  # noqa: PLC0415
+
+    result = check_cascade(question)
+    if out is not None:
+        from tcopt.show.folder import write_folder  # noqa: PLC0415
+
+        write_folder(out, shown.cascade_check_files(result), read=study)
+    document, table = shown.cascade_check_document, cascade_check_report
+    _answer(lambda: document(result), lambda: table(result), as_json, out)
+    _exit(result.limit)
 
 
 @app.command()

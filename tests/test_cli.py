@@ -93,7 +93,7 @@ def _with_limit(result: CheckResult, met: bool | None) -> CheckResult:
 def test_design_searches_the_study_that_is_named(
     run: Callable[..., Answer], stand_in: Stand
 ) -> None:
-    loaded = stand_in("tcopt.study.load_study", "the study")
+    loaded = stand_in("tcopt.study.load_question", "the study")
     searched = stand_in("tcopt.mix.search.design", first_design())
     answer = run("design", "some/study.toml")
     assert loaded.calls == [(Path("some/study.toml"),)]
@@ -148,7 +148,7 @@ def test_check_says_whether_the_limit_is_met(
     code: int,
     as_json: bool,
 ) -> None:
-    stand_in("tcopt.study.load_study", "the study")
+    stand_in("tcopt.study.load_question", "the study")
     called = stand_in("tcopt.check.check", _with_limit(checked, met))
     answer = run("check", "x.toml", *(["--json"] if as_json else []))
     assert called.calls == [("the study",)]

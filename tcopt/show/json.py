@@ -19,8 +19,8 @@ if TYPE_CHECKING:
     from tcopt.study import Study
 
 __all__ = [
-    "Document", "check_document", "choices_document", "design_document", "json_text",
-    "limit_document", "menu_document", "mix_document", "study_heading",
+    "Document", "check_document", "choices_document", "design_document", "figures_document",
+    "json_text", "limit_document", "menu_document", "mix_document", "study_heading",
 ]  # fmt: skip
 
 Document = dict[str, Any]
@@ -50,7 +50,7 @@ def check_document(result: CheckResult) -> Document:
         "current_A": result.current.tolist(),
         "target_A": result.target.tolist(),
         "currents_A": {name: current.tolist() for name, current in result.currents.items()},
-        **_figures(found),
+        **figures_document(found),
         "budget": [
             {
                 "place": row.place,
@@ -71,7 +71,7 @@ def design_document(result: DesignResult) -> Document:
     return {
         **study_heading(result.study),
         "designs": [
-            _figures(found)
+            figures_document(found)
             | {
                 "plain_mirror": mirror
                 and {
@@ -144,7 +144,8 @@ def study_heading(study: Study) -> Document:
     }
 
 
-def _figures(found: Assessment) -> Document:
+def figures_document(found: Assessment) -> Document:
+    """Return one design: its resistors, ratios and input, its drift, its verdict."""
     operation = found.operation
     return {
         "resistors": {slot: mix_document(mix) for slot, mix in operation.mixes.items()},
