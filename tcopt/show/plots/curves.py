@@ -78,7 +78,13 @@ def current_picture(found: Assessment) -> Figure:
     axes.ticklabel_format(axis="y", useOffset=False)
     temperature_axis(axes)
     axes.legend(loc="best")
+    at_reference = np.interp(study.range.reference, T, scale * current)
     _reference_line(axes, study.range.reference)
+    axes.annotate(
+        "T_ref", (study.range.reference - _ZERO_CELSIUS, float(at_reference < middle)),
+        xycoords=("data", "axes fraction"), xytext=(3, -11 if at_reference < middle else 3),
+        textcoords="offset points", color="#444444",
+    )  # fmt: skip
     left = found.residual_drift
     with_title(
         figure,
@@ -96,12 +102,7 @@ def _percent(ppm: float) -> str:
 
 
 def _reference_line(axes: Axes, reference: float) -> None:
-    at = reference - _ZERO_CELSIUS
-    axes.axvline(at, color=GREY, linewidth=0.9, linestyle=":", zorder=1)
-    axes.annotate(
-        "T_ref", (at, 0), xycoords=("data", "axes fraction"), xytext=(3, 3),
-        textcoords="offset points", color="#444444",
-    )  # fmt: skip
+    axes.axvline(reference - _ZERO_CELSIUS, color=GREY, linewidth=0.9, linestyle=":", zorder=1)
 
 
 @drawn
@@ -124,12 +125,17 @@ def residual_picture(found: Assessment) -> Figure:
     axes.ticklabel_format(axis="y", useOffset=False, style="plain")
     temperature_axis(axes)
     axes.margins(x=0.06)
+    at, foot = study.range.reference - _ZERO_CELSIUS, axes.get_ylim()
     labels = []
     for extreme, marker in ((left.lowest, "v"), (left.highest, "^")):
         x, y = extreme.temperature - _ZERO_CELSIUS, 1e6 * (extreme.value - 1)
         axes.plot(x, y, marker, ms=8, mfc=VERMILLION, mec=INK, mew=0.8, zorder=4)
         labels.append(Label(x, y, pretty(f"{y:+.0f} ppm\nat {x:.4g} °C"), radius=6))
-    verdict = verdict_words(found.limit) if found.limit else "No limit is set"
+    labels.append(Label(at, foot[0], "T_ref", radius=1))
+    if found.limit:
+        verdict = verdict_words(found.limit)
+    else:
+        verdict = f"The current stays within {_percent(left.deviation_ppm)}; no limit is set"
     definitions = "; ".join(f"{name} = {DEFINITIONS[name][1]}" for name in ("deviation", "box"))
     with_title(
         figure,
@@ -141,7 +147,8 @@ def residual_picture(found: Assessment) -> Figure:
         f"{figure_words('box_ppm_per_K', left.box_ppm_per_K)}",
         f"{note}Triangles: lowest and highest. {definitions}, here of I/I_target.",
     )
-    place(figure, axes, labels, _pieces(T - _ZERO_CELSIUS, residual))
+    lines = [*_pieces(T - _ZERO_CELSIUS, residual), ((at, foot[0]), (at, foot[1]))]
+    place(figure, axes, labels, lines)
     return figure
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Sequence
 from contextlib import suppress
+from itertools import pairwise
 from textwrap import fill
 from typing import TYPE_CHECKING
 
@@ -68,8 +69,9 @@ def resistor_map(result: DesignResult, slot: str) -> Figure:
     at = mix_point(mix, reference)
     chosen = _ppm((at.tc1, at.tc2))
     figure, axes = new_figure(5.4)
-    away = _frame(axes, [*points, chosen], needed)
-    lines = _hull(axes, points) + _lever_lines(axes, mix, reference, chosen)
+    way = _way(mix, reference)
+    away = _frame(axes, [*points, chosen, *way], needed)
+    lines = _hull(axes, points) + _lever_lines(axes, mix, reference, chosen, way)
     _mark_points(axes, materials, points, mix)
     labels = [
         Label(*(away or needed), _needed_words(needed, away is not None), bold=True, radius=9)
@@ -175,26 +177,34 @@ def _outline(points: Array) -> Array:
     return points[sorted({int(np.argmin(along)), int(np.argmax(along))})]
 
 
+def _way(mix: Mix, reference: float) -> list[tuple[float, float]]:
+    """Return the way of a two-part mix from part to part; straight in series."""
+    if len(mix.parts) != 2:
+        return []
+    ends = [moved_coefficients(part.material, reference) for part in mix.parts]
+    return [_ppm(lever(ends, (1 - w, w), mix.join)) for w in np.linspace(0, 1, 41).tolist()]
+
+
 def _lever_lines(
-    axes: Axes, mix: Mix, reference: float, chosen: tuple[float, float]
+    axes: Axes,
+    mix: Mix,
+    reference: float,
+    chosen: tuple[float, float],
+    way: Points,
 ) -> list[Segment]:
     """Draw the way from part to part on which the mix lies; return it for labels to avoid."""
-    ends = [moved_coefficients(part.material, reference) for part in mix.parts]
-    if len(ends) == 1:
+    if way:
+        array = np.array(way)
+        axes.plot(*array.T, color=BLUE, linewidth=2.0, zorder=2)
+        if mix.join == "parallel":
+            axes.plot(*array[[0, -1]].T, color=BLUE, linewidth=1.0, linestyle=":", zorder=2)
+        return list(pairwise(way[::4]))
+    if len(mix.parts) == 1:
         return []
-    if len(ends) > 2:
-        for end in ends:
-            x, y = _ppm(end)
-            axes.plot([x, chosen[0]], [y, chosen[1]], color=BLUE, linewidth=1.4, zorder=2)
-        return [(_ppm(end), chosen) for end in ends]
-    way = np.array([_ppm(lever(ends, (1 - w, w), mix.join)) for w in np.linspace(0, 1, 41)])
-    axes.plot(*way.T, color=BLUE, linewidth=2.0, zorder=2)
-    if mix.join == "parallel":
-        axes.plot(*way[[0, -1]].T, color=BLUE, linewidth=1.0, linestyle=":", zorder=2)
-    return [
-        ((float(a[0]), float(a[1])), (float(b[0]), float(b[1])))
-        for a, b in zip(way[:-1:4], way[4::4], strict=False)
-    ]
+    ends = [_ppm(moved_coefficients(part.material, reference)) for part in mix.parts]
+    for x, y in ends:
+        axes.plot([x, chosen[0]], [y, chosen[1]], color=BLUE, linewidth=1.4, zorder=2)
+    return [(end, chosen) for end in ends]
 
 
 def _mark_points(

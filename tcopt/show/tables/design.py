@@ -175,10 +175,11 @@ def _mixes(found: Assessment, result: DesignResult) -> str:
     lines: list[str] = []
     for slot, mix in mixes.items():
         sign = {"series": "+ ", "parallel": "|| "}[mix.join]
-        name = f"{slot}: " if len(mixes) > 1 else ""
+        if len(mixes) > 1:
+            lines.append(f"{slot}:")
         for index, part in enumerate(mix.parts):
             value = format_quantity(part.value, "ohm", digits)
-            lines.append(f"{sign if index else name}{part.material.name} {value}")
+            lines.append(f"{sign if index else ''}{part.material.name} {value}")
     return "\n".join(lines)
 
 
