@@ -244,7 +244,7 @@ class Latex(Writer):
 
     def symbol(self, name: str) -> str:  # noqa: D102
         parsed = quantity_of(name)
-        if parsed and parsed.prefix not in {"x", "w"}:
+        if parsed and parsed.prefix not in {"x", "w", "K"}:
             head = rf"\mathrm{{{parsed.prefix}}}"
             if is_quantity(parsed.of):
                 return rf"{head}({self.symbol(parsed.of)})"
