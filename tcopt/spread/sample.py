@@ -9,6 +9,9 @@ from typing import Any
 import numpy as np
 from scipy.special import ndtri
 
+# Slow to import, but here, so that a process that is copied from this one need not.
+from scipy.stats import qmc
+
 from tcopt.arrays import Array
 
 __all__ = ["BLOCK", "SOBOL", "block_count", "normals", "points"]
@@ -68,8 +71,6 @@ class _Sequence:
 
     def __init__(self, seed: int, variates: int) -> None:
         self.of = (seed, variates)
-        from scipy.stats import qmc  # noqa: PLC0415  slow to import
-
         self._engine: Any = qmc.Sobol(variates, bits=_LAST_BITS, rng=np.random.default_rng(seed))
 
     def points(self, start: int, count: int) -> Array:

@@ -215,7 +215,7 @@ def _histogram(axes: Axes, result: SpreadResult, name: str) -> None:
     bound = _bound(result)
     if name == result.judged and bound is not None:
         ends.append(bound)
-    pad = 0.04 * (max(ends) - min(ends)) or 0.01 * max(ends)
+    pad = 0.04 * (max(ends) - min(ends)) or 0.01 * max(ends) or 1.0
     axes.set_xlim(min(ends) - pad, max(ends) + pad)
     axes.set_ylim(0)
     axes.set_xlabel(f"{shown.words[0].upper()}{shown.words[1:]} [{unit}]")
