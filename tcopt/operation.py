@@ -18,9 +18,11 @@ from tcopt.arrays import Array
 from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
 from tcopt.devices import DeviceQuantity, device_quantities
 from tcopt.errors import NoSolutionError
+from tcopt.heating import heated, heated_in_steps, power, power_and_slope
 from tcopt.laws.numbers import resistance_ratio, resistance_ratio_slope, thermal_voltage
+from tcopt.nodes import Nodes, node_values, nodes_of
 from tcopt.solve import Numerics, currents, needed_resistance, numerics, sensitivities
-from tcopt.symbols import resistance_name
+from tcopt.symbols import INVERSE, resistance_name
 
 if TYPE_CHECKING:
     from tcopt.study import Part, Study
@@ -85,6 +87,10 @@ class Choices:
 class Operation:
     """A study's circuit with one choice of ratios and input, and a mix in each slot.
 
+    With a thermal resistance in the study the circuit is warmer than the range: its
+    *die* temperature. What takes a die temperature says so; all else is a temperature
+    of the range.
+
     ``mixes`` may leave out slots that are still open; then only `needed` and
     `quantities` of the others are to be had. ``other_bases``: base currents [A] of
     further outputs that share the input; without it there are none.
@@ -105,8 +111,55 @@ class Operation:
     def _device(self) -> dict[str, DeviceQuantity]:
         return device_quantities(self.study.circuit)
 
+    @cached_property
+    def nodes(self) -> Nodes | None:
+        """The circuit's nodes (`tcopt.nodes`); None if it has none to speak of."""
+        made = self.study.circuit
+        return nodes_of(made.topology, made.feed, made.device)
+
+    def die_temperature(self, temperature: ArrayLike) -> Array:
+        """Return the circuit's temperatures [K] where those of the range are these.
+
+        Raises
+        ------
+        NoSolutionError
+            Where its power runs away.
+        """
+        T = np.asarray(temperature, dtype=float)
+        resistance = self.study.range.thermal_resistance
+        if resistance is None:
+            return T
+        return heated(T, resistance, lambda die: power_and_slope(self, die))
+
+    def pinned_die_temperature(self, slot: str, output: ArrayLike, temperature: ArrayLike) -> Array:
+        """Return the same with the output [A] held by the resistance of a slot; nan without one."""
+        T = np.asarray(temperature, dtype=float)
+        resistance = self.study.range.thermal_resistance
+        if resistance is None:
+            return T
+
+        def watts(die: Array) -> Array:
+            found = self.quantities(die)
+            held = needed_resistance(self.circuit, slot, output, found)
+            found[resistance_name(slot)] = np.where(held > 0, held, np.nan)
+            return power(self, die, found)
+
+        return heated_in_steps(T, resistance, watts)
+
+    def power(self, die: Array) -> Array:
+        """Return what heats the circuit [W] at die temperatures [K]."""
+        return power(self, die)
+
+    def node_values(self, temperature: ArrayLike) -> dict[str, Array]:
+        """Return node voltages [V] and densities [A] by symbol (`tcopt.symbols`)."""
+        if self.nodes is None:
+            return {}
+        die = self.die_temperature(temperature)
+        found = node_values(self.nodes, self.quantities(die))
+        return {name: np.broadcast_to(value, die.shape) for name, value in found.items()}
+
     def quantities(self, temperature: ArrayLike) -> dict[str, Array]:
-        """Return the circuit's quantities at temperatures [K], shorts and absent ones included."""
+        """Return the circuit's quantities at die temperatures [K], shorts included."""
         T = np.asarray(temperature, dtype=float)
         made = self.study.circuit
         found: dict[str, Array] = {
@@ -142,7 +195,7 @@ class Operation:
             Where the circuit has none, with the temperature.
         """
         T = np.asarray(temperature, dtype=float)
-        found = currents(self.circuit, self.quantities(T))
+        found = currents(self.circuit, self.quantities(self.die_temperature(T)))
         for name, current in found.items():
             bad = ~((current > 0) & np.isfinite(current))
             if bad.any():
@@ -159,22 +212,58 @@ class Operation:
         return self.currents(temperature)[self.circuit.currents[-1]]
 
     def needed(self, slot: str, output: ArrayLike, temperature: ArrayLike) -> Array:
-        """Return the resistance [ohm] that an open slot needs for this output [A]."""
+        """Return the resistance [ohm] a slot needs for this output [A] at die temperatures [K]."""
         return needed_resistance(self.circuit, slot, output, self.quantities(temperature))
 
     def sensitivities(self, temperature: ArrayLike, of: str = "I_out") -> dict[str, Array]:
-        """Return ``d ln I/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`)."""
-        T = np.asarray(temperature, dtype=float)
-        return sensitivities(self.circuit, self.quantities(T), of)
+        """Return ``d ln I/d ln q`` at temperatures [K] (`tcopt.solve.sensitivities`).
+
+        With the die's temperature held.
+        """
+        die = self.die_temperature(temperature)
+        return sensitivities(self.circuit, self.quantities(die), of)
 
     def causes(self, temperature: ArrayLike) -> dict[str, Array]:
         """Return the output's local temperature coefficient [1/K], split into its causes.
 
         Each cause is a sensitivity times the slope of its quantity; the sum is
-        ``(dI_out/dT)/I_out`` exactly, by the chain rule.
+        ``(dI_out/dT)/I_out`` exactly, by the chain rule. What the Early effect adds is
+        the difference to the same circuit without it, whose causes the others are: it
+        has no slope of its own, but acts on all. What self-heating adds is all of this
+        times ``dT_die/dT - 1``.
         """
         T = np.atleast_1d(np.asarray(temperature, dtype=float))
-        by_quantity = self.sensitivities(T)
+        die = self.die_temperature(T)
+        causes = self._causes_at(die, early=False)
+        if "early effect" in self.study.circuit.effects:
+            causes["Early effect"] = _total(self._causes_at(die, early=True)) - _total(causes)
+        resistance = self.study.range.thermal_resistance
+        if resistance is not None:
+            excess = 1 / (1 - resistance * power_and_slope(self, die)[1]) - 1
+            causes["self-heating"] = excess * _total(causes)
+        return causes
+
+    def _causes_at(self, die: Array, *, early: bool) -> dict[str, Array]:
+        """Return the causes at die temperatures [K], with the Early effect or without it."""
+        found = self.quantities(die)
+        if not early and INVERSE["V_A"] in found:
+            found[INVERSE["V_A"]] = np.asarray(0.0)
+        by_quantity = sensitivities(self.circuit, found)
+        return {
+            cause: np.broadcast_to(by_quantity[symbol] * slope, die.shape)
+            for (symbol, cause), slope in self._slopes(die).items()
+            if symbol in by_quantity
+        }
+
+    def quantity_slopes(self, die: Array) -> dict[str, Array]:
+        """Return ``d ln q/dT`` [1/K] of each quantity that moves (of ``log_I_S`` its slope)."""
+        total: dict[str, Array] = {}
+        for (symbol, _), slope in self._slopes(die).items():
+            total[symbol] = total[symbol] + slope if symbol in total else slope
+        return total
+
+    def _slopes(self, T: Array) -> dict[tuple[str, str], Array]:
+        """Return the slopes at die temperatures [K] by symbol and cause."""
         made = self.study.circuit
         d = T - self.study.range.reference
         slopes: dict[tuple[str, str], Array] = {("V_T", "thermal voltage"): 1 / T}
@@ -191,11 +280,11 @@ class Operation:
         for slot, mix in self.mixes.items():
             for (material, order), slope in mix.slopes(T).items():
                 slopes[resistance_name(slot), f"{order} of {material} in {slot}"] = slope
-        return {
-            cause: np.broadcast_to(by_quantity[symbol] * slope, T.shape)
-            for (symbol, cause), slope in slopes.items()
-            if symbol in by_quantity
-        }
+        return slopes
+
+
+def _total(causes: Mapping[str, Array]) -> Array:
+    return np.asarray(np.sum(list(causes.values()), axis=0))
 
 
 def fixed_mixes(study: Study) -> dict[str, Mix]:

@@ -180,8 +180,43 @@ STUDY_REFUSALS = [
         "circuit.input_current: found a key that 'ptat core' does not have; accepted: topology, tr",
     ),
     (
-        {"circuit": {**CORE, "supply": 5}, "resistors": {"core": PART}},
-        "circuit.supply: found a key that 'ptat core' does not have; accepted: topology, transisto",
+        {"circuit": {**SENSE, "supply": 5}, "resistors": {"sense": PART}},
+        "circuit.supply: found a key that 'reference over resistor' does not have; accepted: topol",
+    ),
+    (
+        {"circuit": {**SENSE, "mirror_drop": 0.2}, "resistors": {"sense": PART}},
+        "circuit.mirror_drop: found a key that 'reference over resistor' does not have; accepted: ",
+    ),
+    (
+        {**SUPPLIED, "circuit.mirror_drop": 0.2},
+        "circuit.mirror_drop: found a key that 'degenerated mirror' does not have; accepted: topol",
+    ),
+    (
+        {"circuit.mirror_transistor": "npn"},
+        "circuit.mirror_transistor: found a key that 'degenerated mirror' does not have; accepted:",
+    ),
+    (
+        {
+            "circuit": {**CORE, "mirror_drop": 0.2, "mirror_transistor": "npn"},
+            "resistors": {"core": PART},
+        },
+        "circuit.mirror_transistor: found both; accepted: either mirror_drop or mirror_transistor",
+    ),
+    (
+        {"range.thermal_resistance": "100 K/W"},
+        "circuit.output_voltage: found nothing; accepted: the voltage of the output node, for the",
+    ),
+    (
+        {
+            "circuit": CORE,
+            "resistors": {"core": PART},
+            "range.thermal_resistance": "100 K/W",
+        },
+        "circuit.supply: found nothing; accepted: the supply of its branches, for the power that",
+    ),
+    (
+        {"range.thermal_resistance": "100 ohm"},
+        "range.thermal_resistance: found '100 ohm'; accepted: a thermal resistance such as '150 K/",
     ),
     ({"circuit": CORE, "resistors": {}}, "resistors.core: found nothing; accepted: a table with"),
     (

@@ -50,13 +50,25 @@ class Band:
         return replace(self, operation=replace(self.operation, choices=choices))
 
     @cached_property
+    def _die(self) -> dict[bytes, Array]:
+        return {}
+
+    @cached_property
     def _known(self) -> dict[tuple[bytes, str, float], Edges]:
         return {}
 
     def resistance(self, temperature: Array, off: ArrayLike) -> Array:
         """Return the needed resistance [ohm] for the target times (1 + off)."""
         output = self.target.current(temperature) * (1 + np.asarray(off))
-        return self.operation.needed(self.slot, output, temperature)
+        return self.operation.needed(self.slot, output, self.die_temperature(temperature))
+
+    def die_temperature(self, temperature: Array) -> Array:
+        """Return the circuit's temperatures [K] with the output at its target."""
+        key = temperature.tobytes()
+        if key not in self._die:
+            output = self.target.current(temperature)
+            self._die[key] = self.operation.pinned_die_temperature(self.slot, output, temperature)
+        return self._die[key]
 
     def edges(self, temperature: Array, join: str, e: float) -> Edges:
         """Return the band's edges at e, and their slopes, in what is linear for this join.

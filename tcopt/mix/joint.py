@@ -321,11 +321,12 @@ class _Point:
         try:
             off = np.log(filled.output(T) / self.target.current(T))
             by_quantity = filled.sensitivities(T)
+            die = filled.die_temperature(T)
         except NoSolutionError:
             return None
         blocks, limits = [], []
         for name, offer in self.chosen.items():
-            columns = offer.columns(T)
+            columns = offer.columns(die)
             total = columns @ self.values[name]
             # relative change of R per unit of each coefficient's share of the whole
             relative = columns * total.mean() / total[:, None]
@@ -333,7 +334,7 @@ class _Point:
             sign = 1 if offer.join == "series" else -1
             blocks.append(sign * by_quantity[resistance_name(name)][:, None] * relative)
         scales = [
-            float((offer.columns(T) @ self.values[name]).mean())
+            float((offer.columns(die) @ self.values[name]).mean())
             for name, offer in self.chosen.items()
         ]
         sizes = [block.shape[1] for block in blocks]
@@ -391,7 +392,7 @@ class _Point:
         ratio = float(np.log(filled.currents(middle)["I_in"] / self.target.current(middle))[0])
         blocks = []
         for (name, offer), scale in zip(self.chosen.items(), scales, strict=True):
-            columns = offer.columns(middle)
+            columns = offer.columns(filled.die_temperature(middle))
             sign = 1 if offer.join == "series" else -1
             total = columns @ self.values[name]
             blocks.append(sign * by_quantity[resistance_name(name)] * columns * scale / total)

@@ -100,7 +100,7 @@ def _program(
     if not (np.isfinite(edges.low).all() and (edges.high > 0).all()):
         return None
     bounded = np.isfinite(edges.high) & np.isfinite(edges.high_by_e)
-    columns = offer.columns(nodes)
+    columns = offer.columns(band.die_temperature(nodes))
     size = float(np.median(np.abs(edges.low)))
     per_e = np.abs(edges.low_by_e) * unit  # rows count in units of e, so tolerances do too
     upper = np.column_stack([columns * size, -edges.high_by_e * unit]) / per_e[:, None]

@@ -30,6 +30,8 @@ __all__ = [
 SPARE = 5
 """Designs assessed beyond those shown, since rounding may change their order."""
 _MOST_CHOICES = 10_000
+_STEPS = 10
+"""Steps to the range's temperature at which the die has the reference's; each gains digits."""
 
 
 def design(study: Study, progress: Callable[[int, int], None] | None = None) -> DesignResult:
@@ -201,21 +203,26 @@ def needed_point(found: Assessment, slot: str) -> NeededPoint:
     """Return the perfect resistor's value and coefficients, from the needed resistance.
 
     Its derivatives are those of its Chebyshev interpolant over a few kelvin
-    about the reference, where it is smooth to rounding.
+    about the reference, where it is smooth to rounding. They belong to the
+    resistor's own temperature, the die's.
     """
     operation = found.operation
     others = {name: mix for name, mix in operation.mixes.items() if name != slot}
     open_again = replace(operation, mixes=others)
     reference = operation.study.range.reference
 
-    def need(T: Array) -> Array:
-        return open_again.needed(slot, found.target.current(T), T)
+    def die(T: Array) -> Array:
+        return open_again.pinned_die_temperature(slot, found.target.current(T), T)
 
+    def need(T: Array) -> Array:
+        return open_again.needed(slot, found.target.current(T), die(T))
+
+    at = reference
+    for _ in range(_STEPS):
+        at -= float(die(np.array([at]))[0]) - reference
     reach = 10.0
-    proxy = Chebyshev.interpolate(need, 10, domain=[reference - reach, reference + reach])
-    value = float(proxy(reference))
-    return NeededPoint(
-        value,
-        float(proxy.deriv(1)(reference)) / value,
-        float(proxy.deriv(2)(reference)) / value / 2,
-    )
+    R, own = (Chebyshev.interpolate(f, 10, domain=[at - reach, at + reach]) for f in (need, die))
+    value, rise = float(R(at)), float(own.deriv(1)(at))
+    slope = float(R.deriv(1)(at)) / rise
+    bend = (float(R.deriv(2)(at)) - slope * float(own.deriv(2)(at))) / rise**2
+    return NeededPoint(value, slope / value, bend / value / 2)

@@ -136,9 +136,10 @@ def residuals(band: Band, nodes: Array, allowed: Sequence[Offer], e: float) -> A
             continue  # the quick bound says nothing about so odd a band
         half = (edges.high - edges.low) / 2
         side = (edges.high + edges.low) / 2 / half
+        die = band.die_temperature(nodes)
         for index, offer in enumerate(allowed):
             if offer.join == join:
-                q, _ = np.linalg.qr(offer.columns(nodes) / half[:, None])
+                q, _ = np.linalg.qr(offer.columns(die) / half[:, None])
                 left = side - q @ (q.T @ side)
                 result[index] = np.sqrt(np.mean(left**2))
     return result

@@ -87,6 +87,11 @@ class CascadeStudy:
                     f"search.for: found {shown(study.search.purpose)} with several outputs; "
                     f"accepted: {Search().purpose!r}"
                 )
+            if study.range.thermal_resistance is not None:
+                raise InputError(
+                    "range.thermal_resistance: found it with several outputs; accepted: it in a "
+                    "study of one output"
+                )
             for key, usual in (("spread", Spread()), ("trim", None), ("layout", None)):
                 if getattr(study, key) != usual:
                     raise InputError(

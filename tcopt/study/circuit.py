@@ -37,13 +37,18 @@ class CircuitChoices(Model):
     input_current : given input current at the study's reference [A]
     current_ratio : the same, as a multiple of the target current [1]
     input_tc1, input_tc2 : its coefficients about the study's reference [1/K], [1/K^2]
-    supply : [V], where the input comes through a feed resistor
+    supply : where the input comes through a feed resistor, or, for headroom and power
+        alone, of a circuit that makes its own current [V]
     area_ratio, mirror_ratio : one value, or those that may be chosen [1]
     reference_voltage, reference_tc1, reference_tc2 : likewise, where a reference is held [V]
     effects : which of the transistor's data count: 'current gain', 'early effect',
         'leakage'; none: ideal transistors
     base_current : taken 'from input', or supplied 'through follower'
     output_voltage : of the node that takes the output current [V]
+    mirror_drop : what a given input's source, or the mirror on top, needs between the
+        supply and the circuit [V]
+    mirror_transistor : or the transistor of that mirror, whose diode-connected side takes
+        its base-emitter or gate-source voltage
     well : of MOS transistors whose source is lifted: 'common' bulk, or their 'own' well
     """
 
@@ -64,6 +69,8 @@ class CircuitChoices(Model):
         Literal["from input", "through follower"], words("from input", "through follower")
     ] = "from input"
     output_voltage: Voltage | None = None
+    mirror_drop: Voltage | None = None
+    mirror_transistor: TransistorName | None = None
     well: Annotated[Literal["common", "own"], words("common", "own")] = "common"
 
     @property
@@ -104,12 +111,13 @@ class CircuitChoices(Model):
         coefficients = ("input_tc1", "input_tc2")
         reference = ("reference_voltage", "reference_tc1", "reference_tc2")
         foreign = self._gives(*({"area_ratio", "mirror_ratio"} - set(circuit.choices)))
-        foreign += self._gives(*inputs, *coefficients) if SELF in circuit.feeds else []
+        if SELF in circuit.feeds:
+            kept = {"supply"} if circuit.rests_at_zero else set()
+            foreign += self._gives(*(key for key in inputs if key not in kept), *coefficients)
+        foreign += self._gives(*self._headroom_keys(self.feed, taken=False))
         foreign += [] if circuit.needs_reference_voltage else self._gives(*reference)
         if not circuit.needs_transistor:
-            foreign += self._gives(
-                "transistor", "effects", "base_current", "output_voltage", "well"
-            )
+            foreign += self._gives("transistor", "effects", "base_current", "well")
         if foreign:
             raise refusal(
                 f"a key that {circuit.topology!r} does not have",
@@ -119,6 +127,8 @@ class CircuitChoices(Model):
         if circuit.needs_transistor and self.transistor is None:
             raise refusal("nothing", "the name of a transistor of the process", "transistor")
         self._a_transistor_that_fits()
+        if self.mirror_drop is not None and self.mirror_transistor is not None:
+            raise refusal("both", "either mirror_drop or mirror_transistor", "mirror_transistor")
         if circuit.needs_reference_voltage and self.reference_voltage is None:
             raise refusal("nothing", "a voltage such as '1.2 V'", "reference_voltage")
         if SELF not in circuit.feeds:
@@ -166,17 +176,26 @@ class CircuitChoices(Model):
         if not mos and self.well != "common":
             raise refusal("'own' for a bipolar transistor", "it with MOS transistors alone", "well")
 
+    def _headroom_keys(self, feed: str, *, taken: bool) -> list[str]:
+        """Return which of the keys for what feeds the circuit it takes, or does not take."""
+        has = {"mirror_drop": feed == GIVEN, "mirror_transistor": False}
+        if self.circuit.rests_at_zero:
+            has = dict.fromkeys(has, True)
+        return [key for key, yes in has.items() if yes is taken]
+
     def _takes(self) -> list[str]:
         circuit = self.circuit
         takes = ["topology"]
         if circuit.needs_transistor:
-            takes += ["transistor", "effects", "base_current", "output_voltage", "well"]
+            takes += ["transistor", "effects", "base_current", "well"]
         if SELF not in circuit.feeds:
             takes += ["input_current or current_ratio or supply", "input_tc1", "input_tc2"]
+        elif circuit.rests_at_zero:
+            takes.append("supply")
         takes += circuit.choices
         if circuit.needs_reference_voltage:
             takes += ["reference_voltage", "reference_tc1", "reference_tc2"]
-        return takes
+        return [*takes, "output_voltage", *self._headroom_keys(self.feed, taken=True)]
 
     def _one_input(self, given: list[str], coefficients: list[str]) -> None:
         accepted = "exactly one of input_current, current_ratio, supply"

@@ -159,6 +159,17 @@ class Study(Model):
         return self
 
     @model_validator(mode="after")
+    def _power_is_known(self) -> Study:
+        if self.range.thermal_resistance is None:
+            return self
+        own = self.circuit.circuit.rests_at_zero
+        key = "supply" if own else "output_voltage"
+        if getattr(self.circuit, key) is None:
+            what = "supply of its branches" if own else "voltage of the output node"
+            raise refusal("nothing", f"the {what}, for the power that heats it", f"circuit.{key}")
+        return self
+
+    @model_validator(mode="after")
     def _trim_has_a_hold(self) -> Study:
         for name in ("first", "second"):
             insertion = getattr(self.trim, name, None)

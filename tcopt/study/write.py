@@ -70,7 +70,7 @@ def _circuit(study: Study) -> dict[str, Any]:
             table[key] = _choice(choice, unit)
     for key, unit in (
         ("supply", "V"), ("reference_voltage", "V"), ("input_tc1", "1/K"), ("input_tc2", "1/K^2"),
-        ("reference_tc1", "1/K"), ("reference_tc2", "1/K^2"),
+        ("reference_tc1", "1/K"), ("reference_tc2", "1/K^2"), ("mirror_drop", "V"),
     ):  # fmt: skip
         value: float | None = getattr(given, key)
         if value:
@@ -79,6 +79,8 @@ def _circuit(study: Study) -> dict[str, Any]:
         table["effects"] = list(given.effects)
     if given.output_voltage is not None:
         table["output_voltage"] = exact(given.output_voltage, "V")
+    if given.mirror_transistor is not None:
+        table["mirror_transistor"] = given.mirror_transistor.name
     for key, usual in (("base_current", "from input"), ("well", "common")):
         if getattr(given, key) != usual:
             table[key] = getattr(given, key)
