@@ -15,7 +15,10 @@ import numpy as np
 from tcopt.arrays import Array
 from tcopt.newton import REACH, Block, Start, System, settled, taken
 
-__all__ = ["EFFECTS", "brought_in", "careful"]
+__all__ = ["DROP", "EFFECTS", "brought_in", "careful"]
+
+DROP = "V_drop"
+"""The unknown that stands for a resistance."""
 
 EFFECTS = ("inverse_V_A", "inverse_beta", "I_L", "I_others")
 """Quantities that are nothing in the ideal transistor."""
@@ -43,7 +46,7 @@ def careful(system: System, block: Block, guess: tuple[Any, ...], count: int) ->
     """
     x = np.array([np.broadcast_to(value, count) for value in guess], dtype=float)
     logs = np.array(system.logs)[:, None]
-    weights = np.where(logs, 1.0, 1 / _VOLT)
+    weights = np.array([_weight(name) for name in system.unknowns])[:, None]
     done = np.zeros(count, dtype=bool)
     share = np.ones(count)
     change = _limited(system, x, block, logs)
@@ -65,6 +68,13 @@ def careful(system: System, block: Block, guess: tuple[Any, ...], count: int) ->
         share[where[~better]] /= 2
         active &= share > _SHORTEST
     return list(np.where(done, x, np.nan))
+
+
+def _weight(unknown: str) -> float:
+    """Return how much a change weighs; a drop, in which the loops are linear, does not at all."""
+    if unknown == DROP:
+        return 0.0
+    return 1.0 if unknown.startswith("log_") else 1 / _VOLT
 
 
 def _limited(system: System, x: Array, block: Block, logs: Array) -> Array:

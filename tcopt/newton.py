@@ -9,6 +9,7 @@ whoever can bring them home.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any
@@ -35,6 +36,8 @@ REACH = 3.0
 """Largest change of a logarithm in one step."""
 _CLOSE = 1e-7
 """A step after which, convergence being quadratic, the next would be below rounding."""
+_MUCH = 1e3
+"""A voltage, or a logarithm, beyond which that step does not grow any more with the value."""
 
 
 def shape_of(*nested: Any) -> tuple[int, ...]:
@@ -83,7 +86,7 @@ def taken(block: Block, where: Any) -> dict[str, Any]:
 
 def settled(value: Any, change: Any) -> Any:
     """Say of each point whether a step is so small that it was the last."""
-    return np.abs(change) <= _CLOSE * (1 + np.abs(value))
+    return np.abs(change) <= _CLOSE * (1 + np.minimum(np.abs(value), _MUCH))
 
 
 def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tuple[Array, ...]:
@@ -96,13 +99,16 @@ def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tup
     start : first guess of the unknowns from a block of quantities
     rescue : for points at which the first guess leads nowhere
     """
-    shape = shape_of(*arguments.values())
-    size = int(np.prod(shape))
+    shape = np.broadcast_shapes(*(value.shape for value in arguments.values()))
+    size = math.prod(shape)
     flat = {
-        name: value if value.ndim == 0 else np.broadcast_to(value, shape).reshape(-1)
+        name: value if value.ndim == 0 else _spread(value, shape).reshape(-1)
         for name, value in arguments.items()
     }
     answers = [np.empty(size) for _ in system.unknowns]
+    if size <= _BLOCK:
+        found = _solve_block(system, flat, start, rescue, size)
+        return tuple(value.reshape(shape) for value in found)
     for first in range(0, size, _BLOCK):
         last = min(first + _BLOCK, size)
         block = {n: v if v.ndim == 0 else v[first:last] for n, v in flat.items()}
@@ -112,10 +118,15 @@ def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tup
     return tuple(answer.reshape(shape) for answer in answers)
 
 
+def _spread(value: Any, shape: tuple[int, ...]) -> Any:
+    """Return the value in this shape; broadcasting what has it already takes time."""
+    return value if np.shape(value) == shape else np.broadcast_to(value, shape)
+
+
 def _solve_block(
     system: System, block: Block, start: Start, rescue: Rescue, count: int
 ) -> list[Array]:
-    values = [np.array(np.broadcast_to(guess, count), dtype=float) for guess in start(block)]
+    values = [np.array(_spread(guess, (count,)), dtype=float) for guess in start(block)]
     with np.errstate(all="ignore"):
         on_the_way = _iterate(system, block, values, _FIRST_STEPS)
         if on_the_way.any():
@@ -147,4 +158,4 @@ def _iterate(system: System, block: Block, values: list[Array], steps: int) -> A
         lost = np.isnan(values[0])
         if np.all(there | lost):
             break
-    return np.broadcast_to(~(there | lost), values[0].shape)
+    return np.asarray(~(there | lost))

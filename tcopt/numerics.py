@@ -33,7 +33,8 @@ class Real:
     step : the change of each unknown in one step
     outputs : the logarithms of the currents, and their partials by unknown and by quantity
     pinned : the last current's unknown, from the output current
-    pins : by slot, the step and its unknowns, the resistance last, when the output is pinned
+    pins : by slot, when the output is pinned: the step; its unknowns, the resistance last;
+        the numbers of the loops which that resistance is not in
     """
 
     loops: Callable[..., Any]
@@ -41,7 +42,7 @@ class Real:
     step: Callable[..., Any]
     outputs: Callable[..., Any]
     pinned: Callable[..., Any]
-    pins: Mapping[str, tuple[Callable[..., Any], tuple[str, ...]]]
+    pins: Mapping[str, tuple[Callable[..., Any], tuple[str, ...], tuple[int, ...]]]
 
 
 @dataclass(frozen=True)

@@ -9,9 +9,9 @@ import numpy as np
 
 from tcopt import newton
 from tcopt.arrays import Array
-from tcopt.continuation import brought_in, careful
+from tcopt.continuation import DROP, brought_in, careful
 from tcopt.numerics import Numerics, Real
-from tcopt.starts import from_currents, looked_round
+from tcopt.starts import from_above, from_currents, looked_round, some_voltage
 from tcopt.symbols import resistance_name
 
 __all__ = ["at_any_voltage", "needed", "real_of", "solution", "voltages_fit"]
@@ -21,9 +21,8 @@ _LEAST_OF_FOLLOWED = {"inverse_beta": 1.0}
 """A follower cannot be without base currents, since it carries them."""
 _FINE = 8
 """Halvings of the interval in which a loop changes sign, where two did not do."""
-_PINNED_CURRENT, _GIVEN = "I_pinned", "I_given"
-_SOME_VOLTAGE, _SOME_DROP = 0.65, 0.1
-_RATIOS = (1.0, 1e-2, 1e2, 1e-4, 1e4)
+_PINNED_CURRENT, _SOME_DROP = "I_pinned", 0.1
+_RATIOS = (0.5, 1e-2, 1e2, 1e-4, 1e4)
 """Other currents over the output, from which the search for a resistance starts."""
 
 
@@ -66,6 +65,11 @@ def voltages_fit(
         for voltage in real_of(circuit).across(*found, **arguments):
             fit = fit & ((voltage > 0) | (arguments[_EARLY] == 0))
     return np.asarray(fit)
+
+
+def _last(circuit: Numerics) -> str:
+    """Return the unknown of the output current."""
+    return circuit.unknowns[len(circuit.currents) - 1]
 
 
 def _diode_voltage(circuit: Numerics) -> float:
@@ -136,30 +140,40 @@ def needed(circuit: Numerics, slot: str, output: Array, arguments: Mapping[str, 
     output : array [A]
     arguments : all quantities but the slot's resistance
     """
-    real, last = real_of(circuit), circuit.unknowns[len(circuit.currents) - 1]
-    step, unknowns = real.pins[slot]
+    real, last = real_of(circuit), _last(circuit)
+    step, unknowns, apart = real.pins[slot]
     constants = {name: value for name, value in arguments.items() if not name.startswith("R_")}
     with np.errstate(invalid="ignore", divide="ignore"):
         pinned = real.pinned(I_out=output, **constants)
 
     def by_drop(*values: Any, I_pinned: Any, **block: Any) -> tuple[Any, ...]:
-        """Step with the drop of the output current for the resistance, to have volts."""
-        *others, change = step(*values[:-1], values[-1] / I_pinned, **block)
-        return (*others, change * I_pinned)
+        """Step with the drop of a current for the resistance, to have volts."""
+        largest = _fed(I_pinned, block)
+        *others, change = step(*values[:-1], values[-1] / largest, **block)
+        return (*others, change * largest)
 
-    system = newton.System(by_drop, (*unknowns[:-1], "V_drop"))
+    system = newton.System(by_drop, (*unknowns[:-1], DROP))
     everything = {**arguments, last: np.asarray(pinned), _PINNED_CURRENT: output}
-    start = _pinned_start(circuit, slot, unknowns)
-    rescue = _pinned_rescue(system, unknowns, last)
+    look = _pinned_look(circuit, slot, unknowns, apart)
+    start = look if circuit.ideal is None else _pinned_ideal(circuit, slot, unknowns)
+    rescue = _pinned_rescue(system, unknowns, last, look)
     found = newton.solve(system, everything, start, rescue)
-    return np.asarray(found[-1] / output)
+    return np.asarray(found[-1] / _fed(output, arguments))
 
 
-def _pinned_start(circuit: Numerics, slot: str, unknowns: tuple[str, ...]) -> newton.Start:
-    ideal = circuit.ideal
+def _fed(output: Any, block: newton.Block) -> Any:
+    """Return about the largest current: what is fed in, or the output [A]."""
+    fed = block.get("I_given", 0.0)
+    if "R_feed" in block:
+        fed = block["V_CC"] / block["R_feed"]
+    return np.maximum(fed, output)
+
+
+def _pinned_ideal(circuit: Numerics, slot: str, unknowns: tuple[str, ...]) -> newton.Start:
+    """Return the guess of resistance and other currents from ideal transistors."""
+    ideal, own = circuit.ideal, resistance_name(slot)
     if ideal is None:
-        return lambda block: _near_the_output(unknowns, block, 1.0)
-    own = resistance_name(slot)
+        raise AssertionError(f"no ideal transistors in {circuit}")
     currents = from_currents(
         unknowns[:-1], lambda block: _ideal_currents(circuit, block), _diode_voltage(circuit)
     )
@@ -170,37 +184,67 @@ def _pinned_start(circuit: Numerics, slot: str, unknowns: tuple[str, ...]) -> ne
         with np.errstate(invalid="ignore", divide="ignore", over="ignore"):
             resistance = ideal.needs[slot](output, **known)
             filled = {**block, own: np.where(resistance > 0, resistance, 0.0)}
-        return (*currents(filled), resistance * output)
+        return (*currents(filled), resistance * _fed(output, block))
+
+    return guess
+
+
+def _pinned_look(
+    circuit: Numerics, slot: str, unknowns: tuple[str, ...], apart: tuple[int, ...]
+) -> newton.Start:
+    """Return the guess in which the other currents come from the loops without the resistance.
+
+    Of two currents that do, it is the larger one.
+    """
+    real, last, own = real_of(circuit), _last(circuit), resistance_name(slot)
+    logs = [name for name in unknowns if name.startswith("log_")]
+
+    def guess(block: newton.Block) -> tuple[Any, ...]:
+        values = dict(zip(unknowns, _near_the_output(unknowns, block, _RATIOS[0]), strict=True))
+        del values[own]
+        values[last] = block[last]
+        known = {name: block[name] for name in circuit.quantities if name != own}
+        with np.errstate(all="ignore"):
+            for name, k in zip(logs, apart, strict=False):
+                values[name] = from_above(real.loops, values, name, k, {**known, own: 0.0})
+        return (*(values[name] for name in unknowns[:-1]), _SOME_DROP)
 
     return guess
 
 
 def _near_the_output(unknowns: tuple[str, ...], block: newton.Block, ratio: float) -> Any:
-    """Return a guess in which all other currents are what is given, or a part of the output."""
-    currents = {"log_J_in": block[_GIVEN]} if _GIVEN in block else {}
+    """Return a guess in which all other currents are what is fed, or a part of the output."""
     some = block[_PINNED_CURRENT] * ratio
+    is_fed = "I_given" in block or "R_feed" in block
+    fed = _fed(0.0, block) * (1.0 if "I_given" in block else np.minimum(ratio, 1.0))
+    currents = {"log_J_in": fed} if is_fed else {}
+    voltage = some_voltage(block)
     return (
         *(
-            np.log(currents.get(name, some)) if name.startswith("log_") else _SOME_VOLTAGE
+            np.log(currents.get(name, some)) if name.startswith("log_") else voltage
             for name in unknowns[:-1]
         ),
         _SOME_DROP,
     )
 
 
-def _pinned_rescue(system: newton.System, unknowns: tuple[str, ...], last: str) -> newton.Rescue:
+def _pinned_rescue(
+    system: newton.System, unknowns: tuple[str, ...], last: str, look: newton.Start
+) -> newton.Rescue:
     """Return what is tried where the first guess leads to no resistance."""
 
     def rescue(block: newton.Block, count: int) -> tuple[Array, ...]:
         found = [np.full(count, np.nan) for _ in unknowns]
 
-        def attempt(ratio: float) -> _Attempt:
-            return lambda some, size: careful(
-                system, some, _near_the_output(unknowns, some, ratio), size
-            )
+        def attempt(guess: newton.Start) -> _Attempt:
+            return lambda some, size: careful(system, some, guess(some), size)
+
+        def near(ratio: float) -> newton.Start:
+            return lambda some: _near_the_output(unknowns, some, ratio)
 
         possible = np.broadcast_to(np.isfinite(block[last]), count)
-        _fill(found, block, tuple(map(attempt, _RATIOS)), np.flatnonzero(possible))
+        attempts = tuple(map(attempt, (look, *map(near, _RATIOS))))
+        _fill(found, block, attempts, np.flatnonzero(possible))
         return tuple(found)
 
     return rescue

@@ -10,14 +10,14 @@ import numpy as np
 from tcopt.arrays import Array
 from tcopt.newton import Block, Start
 
-__all__ = ["from_currents", "looked_round"]
+__all__ = ["from_above", "from_currents", "looked_round", "some_voltage"]
 
 _TOP, _BOTTOM = 5.0, -45.0
 """Logarithms of currents [A] between which is looked: 150 A to 3e-20 A."""
 _COARSE = 10.0
 _HALVINGS = 2
 _EARLY = "inverse_V_A"
-_LEAST_VOLTAGE = 0.1
+_LEAST_VOLTAGE, _JUNCTION = 0.1, 0.65
 
 
 def from_currents(
@@ -69,30 +69,50 @@ def looked_round(
     """
 
     def guess(block: Block) -> tuple[Any, ...]:
-        plain = dict(block)
-        if _EARLY in block and not with_early_effect:
-            plain[_EARLY] = 0.0
-        threshold = np.maximum(block.get("V_TH", _LEAST_VOLTAGE), _LEAST_VOLTAGE)
-        values: list[Any] = [0.0 if n.startswith("log_") else threshold for n in unknowns]
+        plain = block if with_early_effect else _without_early_effect(block)
+        voltage = some_voltage(block)
+        values = {n: 0.0 if n.startswith("log_") else voltage for n in unknowns}
         with np.errstate(all="ignore"):
             for k, name in enumerate(unknowns):
                 if name.startswith("log_"):
-                    values[k] = _from_above(loops, values, k, plain, halvings)
+                    values[name] = from_above(loops, values, name, k, plain, halvings)
                 else:
-                    left = loops(*values, **plain)[k]
-                    values[k] = np.maximum(threshold - left, _LEAST_VOLTAGE)
-        return tuple(values)
+                    left = loops(**values, **plain)[k]
+                    values[name] = np.maximum(voltage - left, _LEAST_VOLTAGE)
+        return tuple(values.values())
 
     return guess
 
 
-def _from_above(
-    loops: Callable[..., Any], values: list[Any], k: int, block: Block, halvings: int
+def some_voltage(block: Block) -> Any:
+    """Return a guess of the voltage of a diode-connected transistor [V]."""
+    return np.maximum(block.get("V_TH", _JUNCTION), _LEAST_VOLTAGE)
+
+
+def _without_early_effect(block: Block) -> Block:
+    return {**block, _EARLY: 0.0} if _EARLY in block else block
+
+
+def from_above(
+    loops: Callable[..., Any],
+    values: Mapping[str, Any],
+    name: str,
+    k: int,
+    block: Block,
+    halvings: int = _HALVINGS,
 ) -> Array:
-    """Return a logarithm above the largest at which loop k changes sign, or near where it might."""
+    """Return a logarithm above the largest at which a loop changes sign, or near where it might.
+
+    Parameters
+    ----------
+    loops, block, halvings : as for `looked_round`
+    values : of the unknowns
+    name : of the one that is varied
+    k : number of the loop
+    """
 
     def left(x: Any) -> Any:
-        return loops(*values[:k], x, *values[k + 1 :], **block)[k]
+        return loops(**{**values, name: x}, **block)[k]
 
     at_top = left(_TOP)
     above = at_top > 0

@@ -95,9 +95,11 @@ def _resistors(draw: _Draw, topology: str, mos: bool, q: Mapping[str, Any]) -> d
     weight = q["n_S"] if mos else 1.0
     first = _control(q, mos, I_in)
     if topology == "degenerated mirror":
-        drop = draw.or_not(draw.log(1e-3 * V_T, 3.0))
-        left = first + weight * drop - _control(q, mos, I_out, N)
         short = draw.rng.random(draw.count) < 0.1
+        drop = np.where(short, 0.0, draw.or_not(draw.log(1e-3 * V_T, 3.0)))
+        left = first + weight * drop - _control(q, mos, I_out, N)
+        lacking = np.where(short, 0, np.maximum(-left, 0) / weight)
+        drop, left = drop + lacking, left + weight * lacking
         output = np.where(short, 0.0, np.maximum(left, 0) / weight / I_out)
         return {"R_input": drop / I_in, "R_output": output}
     if topology == "peaking source":

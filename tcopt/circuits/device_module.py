@@ -162,7 +162,8 @@ def _pins_source(
         arguments = [_solved_for(last).name, *(q for q in quantities if q != resistance.name)]
         source += _step_source(in_logs, own, arguments, f"pin_{slot.name}")
         names = tuple_text([repr(u.name) for u in own])
-        pins.append(f'"{slot.name}": (pin_{slot.name}, {names})')
+        without = [str(k) for k, r in enumerate(in_logs) if not r.has(resistance)]
+        pins.append(f'"{slot.name}": (pin_{slot.name}, {names}, {tuple_text(without)})')
     return source + f"\n\nPINS = {{{', '.join(pins)}}}\n"
 
 

@@ -178,4 +178,4 @@ def pin_output(log_J_in: Any, V_D: Any, R_output: Any, log_J_out: Any, I_L: Any,
     return (-f0*y0, -y2*(-a12*a20*f0 + a12*y1), -y2*(a00*a21*f1 - a11*y1 - f0*(a10*a21 - a11*a20)))
 
 
-PINS = {"input": (pin_input, ('log_J_in', 'V_D', 'R_input')), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'))}
+PINS = {"input": (pin_input, ('log_J_in', 'V_D', 'R_input'), (0, 2)), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'), (0, 2))}

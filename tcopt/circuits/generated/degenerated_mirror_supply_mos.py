@@ -276,4 +276,4 @@ def pin_output(log_J_in: Any, V_D: Any, R_output: Any, log_J_out: Any, I_L: Any,
     return (y2*(-a01*y0 + a12*a21*f0), y2*(a00*y0 - a12*a20*f0), y2*(-f0*(a10*a21 - a11*a20) - f1*(a01*a20 - y1) - f2*(a00*a11 - a01*a10)))
 
 
-PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed')), "input": (pin_input, ('log_J_in', 'V_D', 'R_input')), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'))}
+PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed'), (1, 2)), "input": (pin_input, ('log_J_in', 'V_D', 'R_input'), ()), "output": (pin_output, ('log_J_in', 'V_D', 'R_output'), (0, 2))}

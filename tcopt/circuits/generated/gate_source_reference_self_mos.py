@@ -144,4 +144,4 @@ def pin_gate(V_D: Any, R_gate: Any, log_J_out: Any, I_L: Any, I_spec: Any, V_T: 
     return (y0*(a01*f1 - a11*f0), y0*(-a00*f1 + f0))
 
 
-PINS = {"gate": (pin_gate, ('V_D', 'R_gate'))}
+PINS = {"gate": (pin_gate, ('V_D', 'R_gate'), ())}

@@ -112,4 +112,4 @@ def pin_source(R_source: Any, log_J_out: Any, I_L: Any, I_spec: Any, N: Any, V_T
     return (-f0/a00,)
 
 
-PINS = {"source": (pin_source, ('R_source',))}
+PINS = {"source": (pin_source, ('R_source',), ())}

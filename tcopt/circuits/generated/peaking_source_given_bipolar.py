@@ -132,4 +132,4 @@ def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, I_g
     return (-f0*y0, -f2, -y0*(-a00*a11*f2 + a00*f1 - a10*f0)/a12)
 
 
-PINS = {"drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}
+PINS = {"drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'), (0, 2))}

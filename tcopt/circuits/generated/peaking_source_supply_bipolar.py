@@ -177,4 +177,4 @@ def pin_drop(log_J_in: Any, V_D: Any, R_drop: Any, log_J_out: Any, I_L: Any, N: 
     return (-y0*(-a01*a12*f2 + a12*f0), -f2, -y0*(a00*f1 - a10*f0 - f2*(a00*a11 - a01*a10)))
 
 
-PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed')), "drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'))}
+PINS = {"feed": (pin_feed, ('log_J_in', 'V_D', 'R_feed'), (1, 2)), "drop": (pin_drop, ('log_J_in', 'V_D', 'R_drop'), (0, 2))}

@@ -176,4 +176,4 @@ def pin_core(V_D: Any, R_core: Any, log_J_out: Any, I_L: Any, I_spec: Any, M: An
     return (-f1*y0, -y0*(-a00*f1 + a10*f0)/a01)
 
 
-PINS = {"core": (pin_core, ('V_D', 'R_core'))}
+PINS = {"core": (pin_core, ('V_D', 'R_core'), (1,))}

@@ -202,4 +202,4 @@ def pin_base(log_J_core: Any, V_D: Any, R_base: Any, log_I_out: Any, I_L: Any, M
     return (y2*(-a01*y0 + a12*a21*f0), y2*(a00*y0 - a12*a20*f0), y2*(-f0*(a10*a21 - a11*a20) - f1*(a01*a20 - y1) - f2*(a00*a11 - a01*a10)))
 
 
-PINS = {"core": (pin_core, ('log_J_core', 'V_D', 'R_core')), "base": (pin_base, ('log_J_core', 'V_D', 'R_base'))}
+PINS = {"core": (pin_core, ('log_J_core', 'V_D', 'R_core'), (1, 2)), "base": (pin_base, ('log_J_core', 'V_D', 'R_base'), (0, 2))}

@@ -140,4 +140,4 @@ def pin_base(V_D: Any, R_base: Any, log_J_out: Any, I_L: Any, V_T: Any, V_out: A
     return (y0*(a01*f1 - a11*f0), y0*(-a00*f1 + f0))
 
 
-PINS = {"base": (pin_base, ('V_D', 'R_base'))}
+PINS = {"base": (pin_base, ('V_D', 'R_base'), ())}
