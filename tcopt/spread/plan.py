@@ -15,7 +15,7 @@ from tcopt.operation import Choices, Mix, Operation
 from tcopt.spread.build import variation_of
 from tcopt.spread.figures import FIGURES, GRID, Frame, figures_of
 from tcopt.spread.sample import BLOCK, normals, points
-from tcopt.spread.trim import Setting, output_of, trimmed
+from tcopt.spread.trim import Setting, behind, output_of, trimmed
 from tcopt.spread.variation import Variation
 from tcopt.targets import target_current
 
@@ -148,7 +148,11 @@ class Plan:
             insertions = self.insertions[:count]
             setting = trimmed(self.variation, z, insertions, self.aims[:count])
             settings.append(setting)
-            current.append(output_of(self.variation, z, T, insertions, setting.scale))
+            ratio = behind(insertions, setting.scale)
+            if ratio is None:
+                current.append(output_of(self.variation, z, T, insertions, setting.scale))
+            else:
+                current.append(current[0] * ratio)
         figures = np.stack([figures_of(self.frame, each) for each in current])
         return Made(figures, np.stack([each[:, :GRID] for each in current]), tuple(settings))
 

@@ -27,9 +27,11 @@ if TYPE_CHECKING:
 
 Flags = np.ndarray[tuple[int, ...], np.dtype[np.bool_]]
 
-__all__ = ["Flags", "Setting", "output_of", "require_reach", "trimmed", "untouched"]
+__all__ = ["Flags", "Setting", "behind", "output_of", "require_reach", "trimmed", "untouched"]
 
 _ROUNDS = 6
+_CLOSE = 1e-11
+"""Change of a logarithm after which the next would be rounding."""
 _PROBE = 1e-4
 """Change of a logarithm by which a partial is taken."""
 _BEYOND = 0.3
@@ -59,14 +61,25 @@ def _scales(
     from tcopt.study import OUTPUT_MIRROR  # noqa: PLC0415  this layer lies below the gate
 
     inside: dict[Scale, Array] = {}
-    behind: Array | float = 1.0
+    ratio: Array | float = 1.0
     for index, insertion in enumerate(insertions):
         column = scale[:, index : index + 1]
         if insertion.scales == OUTPUT_MIRROR:
-            behind = column
+            ratio = column
         else:
             inside[insertion.scales, insertion.material] = column
-    return inside, behind
+    return inside, ratio
+
+
+def behind(insertions: Sequence[Insertion], scale: Array) -> Array | float | None:
+    """Return by what the output is multiplied if nothing inside the circuit is scaled, else None.
+
+    Parameters
+    ----------
+    insertions, scale : as for `output_of`
+    """
+    inside, ratio = _scales(insertions, scale)
+    return None if inside else ratio
 
 
 def output_of(
@@ -85,13 +98,13 @@ def output_of(
     insertions, scale : what a trim scales and by how much [1], shape (parts, insertions)
     """
     inside: Mapping[Scale, Array] = {}
-    behind: Array | float = 1.0
+    ratio: Array | float = 1.0
     if scale is not None:
-        inside, behind = _scales(insertions, scale)
+        inside, ratio = _scales(insertions, scale)
     circuit = variation.operation.circuit
     found = currents(circuit, variation.quantities(z, temperature, inside))[circuit.currents[-1]]
     shape = (len(z), np.shape(temperature)[-1])
-    return np.asarray(np.broadcast_to(found * behind, shape))
+    return np.asarray(np.broadcast_to(found * ratio, shape))
 
 
 @dataclass(frozen=True)
@@ -125,9 +138,11 @@ class _Bench:
                 probe[:, column] += _PROBE
                 slopes[:, :, k] = (self.misses(probe)[:, columns] - miss) / _PROBE
             step = np.nan_to_num(_solved(slopes, miss), nan=0.0, posinf=0.0, neginf=0.0)
-            logs = logs.copy()
+            before, logs = logs, logs.copy()
             logs[:, columns] -= step
             logs = np.clip(logs, low - _BEYOND, high + _BEYOND)
+            if np.abs(logs - before).max() < _CLOSE:
+                break
         return logs
 
 
