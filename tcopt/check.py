@@ -12,7 +12,11 @@ from tcopt.arrays import Array
 from tcopt.assess import Assessment, assess
 from tcopt.circuits import GIVEN, SUPPLY
 from tcopt.errors import InputError
+from tcopt.headroom import Headroom, headroom
 from tcopt.operation import Choices, Operation, fixed_mixes
+from tcopt.start_up import StartUp, start_up
+from tcopt.still_point import StillPoint, still_point
+from tcopt.sweep import Sweep, sweep
 from tcopt.traps import warnings_for
 
 if TYPE_CHECKING:
@@ -57,6 +61,11 @@ class CheckResult:
     supply_sensitivity : ``d ln I_out/d ln V_CC`` at the same three places, or None
     input_sensitivity : ``d ln I_out/d ln I_in`` of a given input there, or None
     warnings : traps that were found, in plain words
+    sweep : what else it does against ``temperature``
+    headroom : the lowest supply and output voltage there; None without transistors
+    sweep_at_places, headroom_at_places : the same at the cold end, the reference, the hot end
+    start_up : how it leaves zero current, if it also rests there
+    still_point : of a MOS transistor at a fixed gate voltage: where its current does not move
     """
 
     study: Study
@@ -68,6 +77,12 @@ class CheckResult:
     supply_sensitivity: tuple[float, ...] | None
     input_sensitivity: tuple[float, ...] | None
     warnings: tuple[str, ...]
+    sweep: Sweep
+    headroom: Headroom | None
+    sweep_at_places: Sweep
+    headroom_at_places: Headroom | None
+    start_up: StartUp | None
+    still_point: StillPoint | None
 
     @property
     def current(self) -> Array:
@@ -149,4 +164,10 @@ def check_operation(operation: Operation) -> CheckResult:
         supply_sensitivity=tuple(map(float, by_quantity["V_CC"])) if feed == SUPPLY else None,
         input_sensitivity=tuple(map(float, by_quantity["I_given"])) if feed == GIVEN else None,
         warnings=warnings_for(found),
+        sweep=sweep(operation, T),
+        headroom=headroom(operation, T),
+        sweep_at_places=sweep(operation, places),
+        headroom_at_places=headroom(operation, places),
+        start_up=start_up(operation),
+        still_point=still_point(operation),
     )

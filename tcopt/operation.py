@@ -195,15 +195,20 @@ class Operation:
             Where the circuit has none, with the temperature.
         """
         T = np.asarray(temperature, dtype=float)
-        found = currents(self.circuit, self.quantities(self.die_temperature(T)))
+        quantities = self.quantities(self.die_temperature(T))
+        found = currents(self.circuit, quantities)
         for name, current in found.items():
             bad = ~((current > 0) & np.isfinite(current))
             if bad.any():
                 where = np.broadcast_to(T, bad.shape)[bad].flat[0]
+                leaks = np.broadcast_to(quantities.get("I_L", np.asarray(0.0)), bad.shape)[
+                    bad
+                ].max()
+                beside = f", where a unit junction leaks {leaks:.3g} A" if leaks > 0 else ""
+                would = np.asarray(current)[bad].flat[0]
                 raise NoSolutionError(
                     f"{self.study.circuit.topology}: no solution at {celsius(float(where))} "
-                    f"({name} would be {np.asarray(current)[bad].flat[0]:.4g} A); accepted: a "
-                    "design in which every current is positive over the whole range"
+                    f"({name} would be {would:.4g} A{beside}); accepted: a design in which every current is positive over the whole range"
                 )
         return {name: np.broadcast_to(I, T.shape) for name, I in found.items()}
 

@@ -8,8 +8,8 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from tcopt.assess import Assessment
-from tcopt.circuits import CIRCUITS, GIVEN, SUPPLY
-from tcopt.devices import diode_voltage
+from tcopt.circuits import GIVEN, SUPPLY
+from tcopt.device_traps import DEVICE_TRAPS
 from tcopt.drift import extreme_points
 from tcopt.laws.numbers import thermal_voltage
 from tcopt.operation import celsius
@@ -21,8 +21,6 @@ __all__ = ["warnings_for"]
 
 _FEW_SQUARES = 5.0
 """Squares below which the end resistance is a good part of the whole (common practice)."""
-_SMALL_HEADROOM = 0.2
-"""Volts across the resistors below which V_BE's drift rules the input (common practice)."""
 _PEAK = 0.2
 """Sensitivity of a peaking source's output to its input above which it sits on the flank."""
 
@@ -109,22 +107,6 @@ def _input_in_logarithm(found: Assessment) -> Iterator[str]:
         )
 
 
-def _cold_headroom(found: Assessment) -> Iterator[str]:
-    operation = found.operation
-    made = operation.study.circuit
-    if made.feed != SUPPLY or made.transistor is None or made.supply is None:
-        return
-    cold = np.array([operation.study.range.low])
-    I_in = operation.currents(cold)["I_in"]
-    V_BE = diode_voltage(made, I_in, 1.0, cold)
-    drop = float((made.supply - V_BE)[0])
-    if drop < _SMALL_HEADROOM:
-        yield (
-            f"at {celsius(float(cold[0]))} only {drop:.3f} V of the {made.supply:.3g} V supply are "
-            "left for the resistors, since V_BE rises by about 2 mV/K towards the cold"
-        )
-
-
 def _flank(found: Assessment) -> Iterator[str]:
     operation = found.operation
     if operation.study.circuit.topology != "peaking source":
@@ -156,21 +138,14 @@ def _box_hides_deviation(found: Assessment) -> Iterator[str]:
         )
 
 
-def _start_up(found: Assessment) -> Iterator[str]:
-    topology = found.operation.study.circuit.topology
-    if CIRCUITS[topology].rests_at_zero:
-        yield f"the loop of a {topology} also rests at zero current: it needs a start-up"
-
-
 _TRAPS: tuple[Callable[[Assessment], Iterator[str]], ...] = (
     _one_temperature,
     _box_hides_deviation,
     _input_in_logarithm,
-    _cold_headroom,
     _flank,
     _other_reference,
     _beyond_validity,
     _no_coefficients,
     _few_squares,
-    _start_up,
+    *DEVICE_TRAPS,
 )

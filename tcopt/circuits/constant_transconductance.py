@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from tcopt.circuits.ptat_core import core
-from tcopt.circuits.statement import Circuit, Loop, Slot
+from tcopt.circuits.statement import Circuit, Loop, Slot, Start
 
 if TYPE_CHECKING:
     from tcopt.circuits.terms import Terms
@@ -24,6 +24,6 @@ CIRCUIT = Circuit(
     slots=(Slot("core", "in the source of the wider transistor"),),
     loops=_loops,
     choices=("area_ratio", "mirror_ratio"),
-    rests_at_zero=True,
+    start=Start("core", "gate and drain of the diode-connected transistor"),
     devices=("mos",),
 )

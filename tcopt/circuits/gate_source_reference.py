@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from tcopt.circuits.statement import Circuit, Loop, Slot
+from tcopt.circuits.statement import Circuit, Loop, Slot, Start
 from tcopt.circuits.vbe_reference import junction_over_resistor
 
 if TYPE_CHECKING:
@@ -23,6 +23,6 @@ CIRCUIT = Circuit(
     unknowns=("I_out",),
     slots=(Slot("gate", "from gate to source"),),
     loops=_loops,
-    rests_at_zero=True,
+    start=Start("gate", "drain of the first transistor, which is the gate of the second"),
     devices=("mos",),
 )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from tcopt.circuits.statement import Circuit, Loop, Slot
+from tcopt.circuits.statement import Circuit, Loop, Slot, Start
 
 if TYPE_CHECKING:
     from tcopt.circuits.terms import Terms, Transistor
@@ -35,6 +35,6 @@ CIRCUIT = Circuit(
     slots=(Slot("core", "in the emitter of the larger transistor"),),
     loops=_loops,
     choices=("area_ratio", "mirror_ratio"),
-    rests_at_zero=True,
+    start=Start("core", "base and collector of the diode-connected transistor"),
     devices=("bipolar", "mos"),
 )

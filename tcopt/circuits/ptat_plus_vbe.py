@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from tcopt.circuits.ptat_core import core
-from tcopt.circuits.statement import Circuit, Loop, Slot
+from tcopt.circuits.statement import Circuit, Loop, Slot, Start
 
 if TYPE_CHECKING:
     from tcopt.circuits.terms import Terms
@@ -33,6 +33,6 @@ CIRCUIT = Circuit(
     ),
     loops=_loops,
     choices=("area_ratio", "mirror_ratio"),
-    rests_at_zero=True,
+    start=Start("core", "base and collector of the diode-connected transistor", "ptat core"),
     devices=("bipolar", "mos"),
 )

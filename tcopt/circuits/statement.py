@@ -17,7 +17,7 @@ if TYPE_CHECKING:
 
     from tcopt.circuits.terms import Terms
 
-__all__ = ["GIVEN", "SELF", "SUPPLY", "Circuit", "Loop", "Slot", "input_loop"]
+__all__ = ["GIVEN", "SELF", "SUPPLY", "Circuit", "Loop", "Slot", "Start", "input_loop"]
 
 SELF = "self"
 """The circuit makes its own current: nothing is fed in."""
@@ -45,6 +45,19 @@ class Slot:
         return not self.feeds or feed in self.feeds
 
 
+@dataclass(frozen=True, slots=True)
+class Start:
+    """How a loop that also rests at zero current leaves it.
+
+    ``slot``: the resistor that sets the loop's current. ``node``: where a start-up
+    current has to flow in. ``topology``: the loop alone, where the circuit is more.
+    """
+
+    slot: str
+    node: str
+    topology: str | None = None
+
+
 @dataclass(frozen=True)
 class Loop:
     """One equation of the circuit, ``residual = 0``, and the current that it fixes."""
@@ -66,7 +79,7 @@ class Circuit:
     choices : 'area_ratio', 'mirror_ratio': the whole-number freedoms it has
     feeds : SELF, or GIVEN and SUPPLY: where its input current comes from
     loops : builds the loops from the terms, for one of the feeds
-    rests_at_zero : the loop also holds with no current, so it needs a start-up
+    start : how it is started, if its loop also holds with no current; else None
     is_mirror : copies an input current, so a plain mirror is a fair comparison
     devices : kinds of transistor that it takes: 'bipolar', 'mos', or none
     takes_follower : all bases hang on one node, so that a follower can supply them
@@ -80,10 +93,15 @@ class Circuit:
     choices: tuple[str, ...] = ()
     feeds: tuple[str, ...] = (SELF,)
     needs_reference_voltage: bool = False
-    rests_at_zero: bool = False
+    start: Start | None = None
     is_mirror: bool = False
     devices: tuple[str, ...] = ("bipolar",)
     takes_follower: bool = True
+
+    @property
+    def rests_at_zero(self) -> bool:
+        """Whether its loop also holds with no current, so that it needs a start-up."""
+        return self.start is not None
 
     @property
     def needs_transistor(self) -> bool:

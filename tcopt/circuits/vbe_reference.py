@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from tcopt.circuits.statement import Circuit, Loop, Slot
+from tcopt.circuits.statement import Circuit, Loop, Slot, Start
 
 if TYPE_CHECKING:
     from tcopt.circuits.terms import Terms
@@ -42,5 +42,5 @@ CIRCUIT = Circuit(
     unknowns=("I_out",),
     slots=(Slot("base", "from base to emitter"),),
     loops=_loops,
-    rests_at_zero=True,
+    start=Start("base", "collector of the first transistor, which is the base of the second"),
 )
