@@ -6,12 +6,14 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
-from tcopt.assess import Assessment
+from tcopt.assess import Assessment, Verdict
 
 if TYPE_CHECKING:
+    from tcopt.mix.made import SizeFigures
+    from tcopt.mix.sampled import SiliconFigures, SiliconResult
     from tcopt.study import Study
 
-__all__ = ["Bound", "DesignResult", "NeededPoint", "PlainMirror"]
+__all__ = ["Bound", "DesignResult", "FrontPoint", "NeededPoint", "PlainMirror"]
 
 
 @dataclass(frozen=True)
@@ -59,6 +61,22 @@ class NeededPoint:
 
 
 @dataclass(frozen=True)
+class FrontPoint:
+    """A design that none of those found beats in both area and drift.
+
+    Attributes
+    ----------
+    area : of all resistors [m^2]
+    found : the design
+    silicon : what silicon makes of it, where the search was for silicon
+    """
+
+    area: float
+    found: Assessment
+    silicon: SiliconFigures | None
+
+
+@dataclass(frozen=True)
 class DesignResult:
     """What `design` found.
 
@@ -70,6 +88,9 @@ class DesignResult:
     bound : no mix of the menu does better
     needed : slot -> the perfect resistor, with the winner's choices
     examined, skipped : combinations solved, and ruled out by the bound without solving
+    sizes : beside each design, where the study has a layout
+    silicon : what silicon makes of the designs, where the search was for it
+    front : drift against area, from the smallest up, where the layout asks for it
     """
 
     study: Study
@@ -79,8 +100,18 @@ class DesignResult:
     needed: Mapping[str, NeededPoint]
     examined: int
     skipped: int
+    sizes: tuple[SizeFigures, ...] = ()
+    silicon: SiliconResult | None = None
+    front: tuple[FrontPoint, ...] = ()
 
     @property
     def winner(self) -> Assessment:
         """The best design."""
         return self.designs[0]
+
+    @property
+    def verdict(self) -> Verdict | None:
+        """The winner against the limit: over the parts of silicon where the search was for it."""
+        if self.silicon is not None:
+            return self.silicon.figures[0].limit
+        return self.winner.limit

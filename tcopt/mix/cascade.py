@@ -66,7 +66,7 @@ def design_cascade(
     Raises
     ------
     InputError
-        If a resistor that all outputs share is open.
+        If a resistor that all outputs share is open, or silicon or a layout is asked for.
     NoSolutionError
         If an output has no allowed design with any input.
     """
@@ -76,6 +76,11 @@ def design_cascade(
                 f"{study.path}: resistors.{name}: found an open resistor that all outputs share; "
                 "accepted: parts, since only the outputs' own resistors are designed together"
             )
+    if study.shared.search.purpose == "silicon" or study.shared.layout is not None:
+        raise InputError(
+            f"{study.path}: found several outputs with search.for = 'silicon' or a layout; "
+            "accepted: a study of one output for those"
+        )
     search = _Search(study, progress)
     candidates = sorted((_candidate(outputs) for outputs in search.by_input()), key=_rank)
     outputs, candidates[0] = search.finished(candidates[0])

@@ -64,8 +64,9 @@ class Part(Model):
                 f"what the sizes make, {format_quantity(made, 'ohm', 5)}",
                 "value",
             )
-        whole_law = drawn_material(self.material, self.length)
-        return self.model_copy(update={"material": whole_law})
+        # a frozen model's own validator may still complete it
+        self.__dict__["material"] = drawn_material(self.material, self.length)
+        return self
 
     @property
     def squares(self) -> float | None:
