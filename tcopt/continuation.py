@@ -22,14 +22,14 @@ DROP = "V_drop"
 
 EFFECTS = ("inverse_V_A", "inverse_beta", "I_L", "I_others")
 """Quantities that are nothing in the ideal transistor."""
-_STEPS = 60
+_STEPS = 25
 _SHORTEST = 2.0**-8
 _VOLT = 0.1
 """Change of a voltage that weighs as much as one unit of a logarithm [V]."""
 _GROWTH = 2.0
 """By how much the next step may be larger than the last."""
 _ROUNDS = 40
-_LEAST = 2.0**-7
+_LEAST = 2.0**-4
 """Smallest part of the effects that is brought in at once."""
 
 
@@ -85,14 +85,19 @@ def _limited(system: System, x: Array, block: Block, logs: Array) -> Array:
 
 
 def brought_in(
-    system: System, block: Block, start: Start, count: int, least: Mapping[str, float]
+    system: System,
+    block: Block,
+    starts: tuple[Start, Start],
+    count: int,
+    least: Mapping[str, float],
 ) -> tuple[Array, ...]:
     """Return the unknowns, the effects brought in by degrees; nan where that does not get through.
 
     Parameters
     ----------
     system, block : the equations, and the quantities of ``count`` points
-    start : first guess, from quantities
+    starts : first guess without effects, and with all of them where that way does not
+        lead there: leakage alone, and nothing else, may make a current
     least : part of an effect that has to be there from the beginning, by its name [1]
     """
     effects = [name for name in EFFECTS if name in block]
@@ -106,7 +111,7 @@ def brought_in(
     with np.errstate(all="ignore"):
         everything = np.arange(count)
         plain = at(np.zeros(count), everything)
-        x = np.array(careful(system, plain, start(plain), count))
+        x = np.array(careful(system, plain, starts[0](plain), count))
         part, more = np.zeros(count), np.ones(count)
         active = np.isfinite(x).all(axis=0)
         for _ in range(_ROUNDS):
@@ -120,4 +125,8 @@ def brought_in(
             part[where[through]] = goal[through]
             more[where] *= np.where(through, 2.0, 0.25)
             active &= more > _LEAST
-    return tuple(np.where(part < 1, np.nan, x))
+        lost = np.flatnonzero(part < 1)
+        if lost.size:
+            some = taken(block, lost)
+            x[:, lost] = careful(system, some, starts[1](some), lost.size)
+    return tuple(x)

@@ -31,7 +31,7 @@ Rescue = Callable[[Block, int], tuple[Array, ...]]
 _BLOCK = 4096
 _FIRST_STEPS = 8
 """Steps after which the points that are still on their way go on by themselves."""
-_STEPS = 60
+_STEPS = 40
 REACH = 3.0
 """Largest change of a logarithm in one step."""
 _CLOSE = 1e-7

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping
+from functools import partial
 from typing import Any
 
 import numpy as np
@@ -95,37 +96,12 @@ def _start(circuit: Numerics) -> newton.Start:
 def _rescue(circuit: Numerics, system: newton.System, start: newton.Start) -> newton.Rescue:
     """Return what is tried where the first guess leads nowhere."""
     least = _LEAST_OF_FOLLOWED if circuit.followed else {}
-    fine = looked_round(real_of(circuit).loops, circuit.unknowns, _FINE, with_early_effect=True)
+    fine = looked_round(real_of(circuit).loops, circuit.unknowns, _FINE)
 
     def rescue(block: newton.Block, count: int) -> tuple[Array, ...]:
-        found = [np.full(count, np.nan) for _ in system.unknowns]
-        attempts: tuple[_Attempt, ...] = (
-            lambda some, size: careful(system, some, start(some), size),
-            lambda some, size: brought_in(system, some, start, size, least),
-            lambda some, size: careful(system, some, fine(some), size),
-        )
-        _fill(found, block, attempts, np.arange(count))
-        return tuple(found)
+        return brought_in(system, block, (start, fine), count, least)
 
     return rescue
-
-
-_Attempt = Callable[[newton.Block, int], Sequence[Array]]
-"""Takes a block of so many points, returns the unknowns; nan where it fails."""
-
-
-def _fill(
-    found: Sequence[Array], block: newton.Block, attempts: Sequence[_Attempt], lost: Any
-) -> None:
-    """Make the attempts one after the other, each for the points that are still lost."""
-    for attempt in attempts:
-        if lost.size == 0:
-            return
-        with np.errstate(all="ignore"):
-            again = attempt(newton.taken(block, lost), lost.size)
-        for value, own in zip(found, again, strict=True):
-            value[lost] = own
-        lost = lost[np.isnan(again[0])]
 
 
 def needed(circuit: Numerics, slot: str, output: Array, arguments: Mapping[str, Any]) -> Array:
@@ -233,18 +209,27 @@ def _pinned_rescue(
 ) -> newton.Rescue:
     """Return what is tried where the first guess leads to no resistance."""
 
+    guesses: list[newton.Start] = [look]
+    guesses += [partial(_near_the_output, unknowns, ratio=ratio) for ratio in _RATIOS]
+
     def rescue(block: newton.Block, count: int) -> tuple[Array, ...]:
-        found = [np.full(count, np.nan) for _ in unknowns]
-
-        def attempt(guess: newton.Start) -> _Attempt:
-            return lambda some, size: careful(system, some, guess(some), size)
-
-        def near(ratio: float) -> newton.Start:
-            return lambda some: _near_the_output(unknowns, some, ratio)
-
-        possible = np.broadcast_to(np.isfinite(block[last]), count)
-        attempts = tuple(map(attempt, (look, *map(near, _RATIOS))))
-        _fill(found, block, attempts, np.flatnonzero(possible))
-        return tuple(found)
+        """Start from all guesses at once, and take the first that leads somewhere."""
+        answers = [np.full(count, np.nan) for _ in unknowns]
+        possible = np.flatnonzero(np.broadcast_to(np.isfinite(block[last]), count))
+        if possible.size == 0:
+            return tuple(answers)
+        some = newton.taken(block, possible)
+        with np.errstate(all="ignore"):
+            rows = [[np.broadcast_to(v, possible.size) for v in g(some)] for g in guesses]
+            all_at_once = {
+                name: v if np.ndim(v) == 0 else np.tile(v, len(guesses)) for name, v in some.items()
+            }
+            started = tuple(map(np.concatenate, zip(*rows, strict=True)))
+            found = careful(system, all_at_once, started, possible.size * len(guesses))
+        table = np.reshape(found, (len(unknowns), len(guesses), possible.size))
+        first = np.argmax(np.isfinite(table[0]), axis=0)
+        for answer, values in zip(answers, table, strict=True):
+            answer[possible] = values[first, np.arange(possible.size)]
+        return tuple(answers)
 
     return rescue

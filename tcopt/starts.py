@@ -48,37 +48,31 @@ def from_currents(
 
 
 def looked_round(
-    loops: Callable[..., Any],
-    unknowns: tuple[str, ...],
-    halvings: int = _HALVINGS,
-    *,
-    with_early_effect: bool = False,
+    loops: Callable[..., Any], unknowns: tuple[str, ...], halvings: int = _HALVINGS
 ) -> Start:
     """Return a guess just above the largest current at which each loop in turn holds.
 
-    Without base currents and Early effect a loop depends on its own current and
-    those before it alone, and beyond its solution it bends away from it, so that
-    Newton's method from above gets there in a few steps.
+    Without base currents a loop depends on its own current and those before it
+    alone, and beyond its solution it bends away from it, so that Newton's method
+    from above gets there in a few steps.
 
     Parameters
     ----------
     loops : takes unknowns and quantities, returns what is left of each loop
     unknowns : their names, in the order of the loops
     halvings : of the interval in which the loop changes sign
-    with_early_effect : or without, which the loops then do not bend by
     """
 
     def guess(block: Block) -> tuple[Any, ...]:
-        plain = block if with_early_effect else _without_early_effect(block)
         voltage = some_voltage(block)
         values = {n: 0.0 if n.startswith("log_") else voltage for n in unknowns}
         with np.errstate(all="ignore"):
             for k, name in enumerate(unknowns):
                 if name.startswith("log_"):
-                    values[name] = from_above(loops, values, name, k, plain, halvings)
+                    values[name] = from_above(loops, values, name, k, block, halvings)
                 else:
-                    left = loops(**values, **plain)[k]
-                    values[name] = np.maximum(voltage - left, _LEAST_VOLTAGE)
+                    left = loops(**values, **block)[k]
+                    values[name] = np.fmax(voltage - left, _LEAST_VOLTAGE)
         return tuple(values.values())
 
     return guess
@@ -87,10 +81,6 @@ def looked_round(
 def some_voltage(block: Block) -> Any:
     """Return a guess of the voltage of a diode-connected transistor [V]."""
     return np.maximum(block.get("V_TH", _JUNCTION), _LEAST_VOLTAGE)
-
-
-def _without_early_effect(block: Block) -> Block:
-    return {**block, _EARLY: 0.0} if _EARLY in block else block
 
 
 def from_above(
@@ -103,6 +93,9 @@ def from_above(
 ) -> Array:
     """Return a logarithm above the largest at which a loop changes sign, or near where it might.
 
+    Where a current is so large that it drives the output below its emitter, and
+    the Early effect out of its law, the loop counts as not having changed sign.
+
     Parameters
     ----------
     loops, block, halvings : as for `looked_round`
@@ -111,16 +104,20 @@ def from_above(
     k : number of the loop
     """
 
-    def left(x: Any) -> Any:
-        return loops(**{**values, name: x}, **block)[k]
+    def left(x: Any, quantities: Block = block) -> Any:
+        return loops(**{**values, name: x}, **quantities)[k]
 
-    at_top = left(_TOP)
+    at_top = left(_TOP, {**block, _EARLY: 0.0} if _EARLY in block else block)
     above = at_top > 0
+
+    def beyond(value: Any) -> Any:
+        return ((value > 0) == above) | np.isnan(value)
+
     high: Any = np.full(np.shape(at_top), np.nan)
     nearest, least = np.full(np.shape(at_top), _TOP), np.abs(at_top)
     for x in np.arange(_TOP - _COARSE, _BOTTOM - _COARSE / 2, -_COARSE):
         here = left(x)
-        high = np.where(np.isnan(high) & ((here > 0) != above), x + _COARSE, high)
+        high = np.where(np.isnan(high) & ~beyond(here), x + _COARSE, high)
         nearest = np.where(np.abs(here) < least, x, nearest)
         least = np.fmin(np.abs(here), least)
     missed = np.isnan(high)
@@ -128,6 +125,5 @@ def from_above(
     step = _COARSE
     for _ in range(halvings):
         step /= 2
-        same = (left(high - step) > 0) == above
-        high = np.where(same & ~missed, high - step, high)
-    return np.asarray(high)
+        high = np.where(beyond(left(high - step)) & ~missed, high - step, high)
+    return np.asarray(np.where(np.isnan(left(high)) & ~missed, high - step, high))
