@@ -83,15 +83,22 @@ class Block:
 class Plan:
     """A finished design, and how its parts are drawn.
 
-    Pickled it is study, choices and mixes; the rest is made again at the other end.
+    Pickled it is study, choices, mixes and the order of the variates; the rest is made
+    again at the other end.
+
+    Attributes
+    ----------
+    study, choices, mixes : the design
+    order : which variate has which coordinate of the points; None to find it out
     """
 
     study: Study
     choices: Choices
     mixes: Mapping[str, Mix]
+    order: tuple[int, ...] | None = None
 
     def __reduce__(self) -> tuple[object, ...]:
-        return Plan, (self.study, self.choices, dict(self.mixes))
+        return Plan, (self.study, self.choices, dict(self.mixes), self.ranked)
 
     @property
     def spread(self) -> Spread:
@@ -139,6 +146,31 @@ class Plan:
         """Untrimmed, and after one insertion, two."""
         return 1 + len(self.insertions)
 
+    @cached_property
+    def ranked(self) -> tuple[int, ...]:
+        """Variates in order of what they do, by which the points' coordinates are given out.
+
+        The first coordinates of a Sobol sequence are spread most evenly, also two by two, so
+        they go to the largest shares in the variance of the current and of its slope, to
+        first order, at any stage.
+        """
+        if self.order is not None:
+            return self.order
+        count = len(self.variation.variates)
+        eye = np.eye(count)
+        figures = self.made(np.vstack([eye, -eye])).figures
+        linear = figures[:, :, [FIGURES.index("current"), FIGURES.index("slope")]]
+        effect = np.nan_to_num((linear[:, :count] - linear[:, count:]) ** 2)
+        whole = effect.sum(axis=1, keepdims=True)
+        share = np.where(whole > 0, effect / np.where(whole > 0, whole, 1), 0).max(axis=(0, 2))
+        return tuple(np.argsort(-share, kind="stable").tolist())
+
+    def variates_of(self, unit: Array) -> Array:
+        """Return the standard normal variates of points, both of shape (parts, variates)."""
+        z = np.empty_like(unit)
+        z[:, list(self.ranked)] = normals(unit)
+        return z
+
     def made(self, z: Array) -> Made:
         """Return the parts of given variates, shape (parts, variates)."""
         T = self.frame.temperature
@@ -162,13 +194,13 @@ class Plan:
         unit = points(
             spread.sampling, spread.seed, len(self.variation.variates), spread.samples, number
         )
-        made = self.made(normals(unit))
+        made = self.made(self.variates_of(unit))
         keep = number < FAN_PARTS // BLOCK
         return Block(
             number,
             made.figures,
             made.settings,
-            _sums(unit, made.figures),
+            _sums(unit[:, np.argsort(self.ranked)], made.figures),
             made.current.astype(np.float32) if keep else None,
         )
 

@@ -34,7 +34,8 @@ def points(sampling: str, seed: int, variates: int, samples: int, block: int) ->
 
     Parameters
     ----------
-    sampling : 'sobol', with Owen's scrambling; or 'plain', independent random numbers
+    sampling : 'sobol', scrambled (Matousek 1998: linear matrices and a digital shift); or
+        'plain', independent random numbers
     seed : the same seed gives the same points
     variates : dimensions
     samples : of the whole, which the last block fills up
