@@ -5,9 +5,9 @@ on its input (the symbol I_others). With ``b_k`` the base current of output k,
 
     b_k = (I_out,k(sum of the other b) - N_k I_L)/beta
 
-for all outputs at once, by Newton's method in the logarithms of the ``b_k``.
-MOS transistors and ideal bipolar ones draw none: their outputs do not feel
-each other.
+for all outputs at once, by Newton's method on the loops of all of them: those of
+the input are shared, and each output adds one of its own. MOS transistors and
+ideal bipolar ones draw none: their outputs do not feel each other.
 """
 
 from __future__ import annotations
@@ -19,11 +19,13 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from tcopt import newton
 from tcopt.arrays import Array
 from tcopt.devices import DeviceQuantity, device_quantities
 from tcopt.errors import InputError, NoSolutionError
+from tcopt.numerics import Numerics, arguments_of
 from tcopt.operation import Operation, celsius
-from tcopt.solve import currents, sensitivities
+from tcopt.real import at_any_voltage
 from tcopt.symbols import INVERSE
 from tcopt.targets import target_current
 
@@ -35,10 +37,6 @@ __all__ = ["Cascade", "bases_at_target", "draws_base_current"]
 _CAUSE = "base current of the other outputs"
 _BETA = INVERSE["beta"]
 _STEPS = 60
-_REACH = 1.0
-"""Largest change of a logarithm in one step."""
-_CLOSE = 1e-7
-"""A step after which, convergence being quadratic, the next would be below rounding."""
 _REMEMBERED = 8
 
 
@@ -120,35 +118,22 @@ class Cascade:
         return np.asarray(np.delete(each, k, axis=0).sum(axis=0))
 
     def _solved(self, T: Array) -> Array:
-        first = self._operations[0]
-        fixed = [operation.quantities(T) for operation in self._operations]
-        alone = [operation.currents(T) for operation in self._operations]
-        gain = fixed[0][_BETA]
-        leakage = self._areas * fixed[0]["I_L"]
-        bases = (np.stack([each["I_out"] for each in alone]) - leakage) * gain
-        # seen alone each output takes too much; so scaled, all of them leave the input some
-        bases = bases / (1 + bases.sum(axis=0) / alone[0]["I_in"])
-        log, step = np.log(bases), np.zeros_like(bases)
-        others = 1 - np.eye(len(fixed))
-        for _ in range(_STEPS):
-            trial = log + step
-            load = others @ np.exp(trial)
-            wanted, steepness = _answers(self._operations, fixed, load, leakage)
-            with np.errstate(invalid="ignore", divide="ignore"):
-                off = np.log(wanted * gain) - trial
-            sound = np.isfinite(off).all(axis=0) & np.isfinite(steepness).all(axis=0)
-            log = np.where(sound, trial, log)
-            weights = others * np.exp(trial).T[:, None, :] / load.T[:, :, None]
-            change = _solve(steepness, weights, off, sound)
-            # where the input has nothing left the step was too long
-            step = np.where(sound, np.clip(change, -_REACH, _REACH), step / 2)
-            open_points = ~sound | (np.abs(step).max(axis=0) > _CLOSE)
-            if not open_points.any():
-                return np.asarray(np.exp(log + step))
-        where = celsius(float(T[open_points][0]))
+        joint = _Joint.of(self._operations, T)
+        values = joint.start()
+        with np.errstate(all="ignore"):
+            for _ in range(_STEPS):
+                change = joint.step(values)
+                change[joint.logs] = np.clip(change[joint.logs], -newton.REACH, newton.REACH)
+                values = values + change
+                there = newton.settled(values, change).all(axis=0)
+                if there.all():
+                    # what settles it leaves an error of 1e-12; the next step leaves rounding
+                    return joint.base_currents(values + joint.step(values))
+        where = celsius(float(T[~there][0]))
         raise NoSolutionError(
-            f"{first.study.circuit.topology}: no solution of all outputs together at {where}; "
-            "accepted: outputs whose base currents the input can supply over the whole range"
+            f"{self._operations[0].study.circuit.topology}: no solution of all outputs together "
+            f"at {where}; accepted: outputs whose base currents the input can supply over the "
+            "whole range"
         )
 
     def _slope(self, k: int, temperature: Array) -> Array:
@@ -179,12 +164,13 @@ class Cascade:
         kappa, lam = (by_temperature * device[name].slope(T) for name in (_BETA, "I_L"))
         outputs = np.stack([operation.output(T) for operation in operations])
         steepness = np.stack([o.sensitivities(T)["I_others"] for o in operations])
-        others = 1 - np.eye(len(operations))
+        others = _others(len(operations))
         load = others @ bases
         own = kappa * bases - lam * self._areas * leak * gain
-        weights = others * (gain * outputs).T[:, None, :] / load.T[:, :, None]
-        sound = np.ones(len(T), dtype=bool)
-        totals = _solve(steepness, weights, held + steepness * (others @ own) / load, sound)
+        pull = (steepness / load).T[:, :, None] * others * (gain * outputs).T[:, None, :]
+        right = held + steepness * (others @ own) / load
+        matrix = np.eye(len(operations)) - pull
+        totals = np.asarray(np.linalg.solve(matrix, right.T[..., None])[..., 0].T, dtype=float)
         return totals, others @ (gain * outputs * totals + own) / load
 
 
@@ -192,33 +178,106 @@ def _held_at(load: Array) -> DeviceQuantity:
     return DeviceQuantity(lambda T: load, np.zeros_like, "")  # noqa: ARG005
 
 
-def _answers(
-    operations: Sequence[Operation],
-    fixed: Sequence[Mapping[str, Array]],
-    load: Array,
-    leakage: Array,
-) -> tuple[Array, Array]:
-    """Return the outputs' currents without leakage [A], and ``d ln`` of them by ``ln I_others``."""
-    found, slopes = [], []
-    for k, (operation, quantities) in enumerate(zip(operations, fixed, strict=True)):
-        loaded = {**quantities, "I_others": load[k]}
-        output = currents(operation.circuit, loaded)["I_out"]
-        with np.errstate(invalid="ignore", divide="ignore"):
-            steepness = sensitivities(operation.circuit, loaded)["I_others"]
-            found.append(output - leakage[k])
-            slopes.append(steepness * output / found[-1])
-    return np.stack(found), np.stack(slopes)
+@dataclass(frozen=True)
+class _Joint:
+    """The loops of all outputs at once: those that they share, and one of each of its own.
 
+    The unknowns are those of one output but its own current, then the current of each.
 
-def _solve(steepness: Array, weights: Array, right: Array, sound: Array) -> Array:
-    """Solve ``x_k - e_k sum_i w_ki x_i = r_k`` at each sound point.
-
-    ``steepness`` and ``right`` of shape (outputs, n), ``weights`` (n, outputs, outputs).
+    Attributes
+    ----------
+    circuit : of every output
+    quantities : of each output at the temperatures, shape (n,) or numbers
+    alone : the unknowns of each output as if there were no other, shape (outputs, unknowns, n)
+    own : where the output's current stands among an output's unknowns, and its loop
     """
-    matrix = np.eye(len(right)) - steepness.T[:, :, None] * weights
-    matrix = np.where(sound[:, None, None], matrix, np.eye(len(right)))
-    side = np.where(sound, right, 0.0).T
-    return np.asarray(np.linalg.solve(matrix, side[..., None])[..., 0].T)
+
+    circuit: Numerics
+    quantities: tuple[dict[str, Array], ...]
+    alone: Array
+    own: int
+
+    @classmethod
+    def of(cls, operations: Sequence[Operation], T: Array) -> _Joint:
+        """Return the loops of these outputs at temperatures [K], shape (n,).
+
+        Raises
+        ------
+        NoSolutionError
+            If an output has no current even alone.
+        """
+        circuit = operations[0].circuit
+        quantities = tuple(
+            arguments_of(circuit.quantities, operation.quantities(T)) for operation in operations
+        )
+        alone = []
+        for operation, own in zip(operations, quantities, strict=True):
+            found = at_any_voltage(circuit, own)
+            if not np.isfinite(np.stack(found)).all():
+                operation.currents(T)
+            alone.append(np.stack([np.broadcast_to(value, T.shape) for value in found]))
+        return cls(circuit, quantities, np.stack(alone), len(circuit.currents) - 1)
+
+    @property
+    def shared(self) -> list[int]:
+        """Where the unknowns that the outputs share stand among those of one, and their loops."""
+        return [k for k in range(len(self.circuit.unknowns)) if k != self.own]
+
+    @property
+    def logs(self) -> list[bool]:
+        """Which unknowns are logarithms."""
+        named = [self.circuit.unknowns[k].startswith("log_") for k in self.shared]
+        return named + [True] * len(self.alone)
+
+    def base_currents(self, values: Array) -> Array:
+        """Return the base current of each output [A], shape (outputs, n)."""
+        return np.asarray(np.exp(values[len(self.shared) :]) * self.quantities[0][_BETA])
+
+    def start(self) -> Array:
+        """Return a first guess: that of plain outputs, whose currents keep their ratio."""
+        gain = self.quantities[0][_BETA]
+        ratios = np.exp(self.alone[:, self.own] - self.alone[:, 0]) * gain
+        shared = self.alone[0, self.shared].copy()
+        if not self.circuit.followed:
+            shared[0] += np.log((1 + gain + ratios[0]) / (1 + gain + ratios.sum(axis=0)))
+        fallen = shared[0] - self.alone[:, 0]
+        return np.concatenate([shared, self.alone[:, self.own] + fallen])
+
+    def step(self, values: Array) -> Array:
+        """Return the change of each unknown in one step of Newton's method."""
+        shared, own = self.shared, self.own
+        count, width = len(self.alone), len(shared)
+        bases = self.base_currents(values)
+        load = _others(count) @ bases
+        points = values.shape[1]
+        matrix = np.zeros((points, width + count, width + count))
+        right = np.zeros((points, width + count))
+        position = self.circuit.quantities.index("I_others")
+        for k, quantities in enumerate(self.quantities):
+            unknowns = list(values[:width])
+            unknowns.insert(own, values[width + k])
+            loops, by_unknown, by_quantity = self.circuit.partials(
+                *unknowns, **{**quantities, "I_others": load[k]}
+            )
+            rows = {width + k: own}
+            if k == 0:
+                rows |= dict(enumerate(shared))
+            for row, loop in rows.items():
+                right[:, row] = -np.asarray(loops[loop])
+                for column, unknown in enumerate(shared):
+                    matrix[:, row, column] = by_unknown[loop][unknown]
+                for other in range(count):
+                    by_load = by_quantity[loop][position] / load[k] * bases[other]
+                    matrix[:, row, width + other] = by_load
+                matrix[:, row, width + k] = by_unknown[loop][own]
+        lost = ~(np.isfinite(matrix).all(axis=(1, 2)) & np.isfinite(right).all(axis=1))
+        matrix[lost] = np.eye(width + count)
+        right[lost] = np.nan
+        return np.asarray(np.linalg.solve(matrix, right[..., None])[..., 0].T)
+
+
+def _others(count: int) -> Array:
+    return np.ones((count, count)) - np.eye(count)
 
 
 def bases_at_target(operations: Mapping[str, Operation], but: str) -> DeviceQuantity | None:
