@@ -41,6 +41,13 @@ _SINGLE_ONLY = {
     "trim": "it in a study of one output",
     "layout": "it in a study of one output",
 }
+_HEATED = (
+    "range.thermal_resistance", "it with several outputs", "it in a study of one output",
+)  # fmt: skip
+_RATIO = (
+    "circuit.current_ratio", "it with several outputs, which have a target each",
+    "input_current or supply",
+)  # fmt: skip
 _TWO = "a table [outputs.NAME] for each of at least two outputs"
 _NAME = re.compile(r"[\w-]{1,60}")
 
@@ -73,36 +80,21 @@ class CascadeStudy:
         for name, study in self.outputs.items():
             made = study.circuit
             if made.topology != _TOPOLOGY:
-                raise InputError(
-                    f"circuit.topology: found {shown(made.topology)} with several outputs; "
-                    f"accepted: {_TOPOLOGY!r}"
-                )
+                raise _other_topology(made.topology)
             if made.current_ratio is not None:
-                raise InputError(
-                    "circuit.current_ratio: found it with several outputs, which have a target "
-                    "each; accepted: input_current or supply"
-                )
+                raise _refuse(*_RATIO)
             if study.search.purpose != Search().purpose:
-                raise InputError(
-                    f"search.for: found {shown(study.search.purpose)} with several outputs; "
-                    f"accepted: {Search().purpose!r}"
-                )
+                found = f"{shown(study.search.purpose)} with several outputs"
+                raise _refuse("search.for", found, repr(Search().purpose))
             if study.range.thermal_resistance is not None:
-                raise InputError(
-                    "range.thermal_resistance: found it with several outputs; accepted: it in a "
-                    "study of one output"
-                )
+                raise _refuse(*_HEATED)
             for key, usual in (("spread", Spread()), ("trim", None), ("layout", None)):
                 if getattr(study, key) != usual:
-                    raise InputError(
-                        f"{key}: found it with several outputs; accepted: {_SINGLE_ONLY[key]}"
-                    )
+                    raise _refuse(key, "it with several outputs", _SINGLE_ONLY[key])
             for key, ours, theirs in _shared_parts(self.shared, study):
                 if ours != theirs:
-                    raise InputError(
-                        f"outputs.{quoted(name)}: found another {key} than in "
-                        f"{quoted(next(iter(self.outputs)))}; accepted: outputs that share it"
-                    )
+                    found = f"another {key} than in {quoted(next(iter(self.outputs)))}"
+                    raise _refuse(f"outputs.{quoted(name)}", found, "outputs that share it")
 
     @property
     def shared(self) -> Study:
@@ -144,6 +136,11 @@ def _refuse(key: str, found: str, accepted: str) -> InputError:
     return InputError(f"{key}: found {found}; accepted: {accepted}")
 
 
+def _other_topology(topology: object) -> InputError:
+    found = f"{shown(topology)} with several outputs"
+    return _refuse("circuit.topology", found, repr(_TOPOLOGY))
+
+
 def _only(table: Mapping[str, Any], keys: Iterable[str], where: str = "") -> None:
     for key in table:
         if key not in keys:
@@ -174,6 +171,8 @@ def single_studies(data: Mapping[str, Any]) -> dict[str, dict[str, Any]]:
         raise _refuse("outputs", only, _TWO)
     _well_named(outputs)
     circuit, resistors = data.get("circuit", {}), data.get("resistors", {})
+    if isinstance(data.get("range"), Mapping) and "thermal_resistance" in data["range"]:
+        raise _refuse(*_HEATED)  # before it asks for voltages
     if isinstance(circuit, Mapping):
         _shared_circuit(circuit)
     if isinstance(resistors, Mapping) and _SLOT in resistors:
@@ -213,11 +212,9 @@ def _shared_circuit(circuit: Mapping[str, Any]) -> None:
             accepted = f"{key} in each of the tables [outputs.NAME]"
             raise _refuse(f"circuit.{key}", "it beside [outputs]", accepted)
     if circuit.get("topology", _TOPOLOGY) != _TOPOLOGY:
-        found = f"{shown(circuit['topology'])} with several outputs"
-        raise _refuse("circuit.topology", found, repr(_TOPOLOGY))
+        raise _other_topology(circuit["topology"])
     if "current_ratio" in circuit:
-        found = "it with several outputs, which have a target each"
-        raise _refuse("circuit.current_ratio", found, "input_current or supply")
+        raise _refuse(*_RATIO)
     _only(circuit, _CIRCUIT, "circuit.")
 
 
