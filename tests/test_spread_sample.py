@@ -41,7 +41,7 @@ def test_sobol_is_the_sequence_of_scipy() -> None:
 
 
 def test_sobol_fills_every_slice_evenly() -> None:
-    """2^14 points put the same number into each of 1024 slices of each variate (any scrambled net does)."""
+    """2^14 points put the same number into each of 1024 slices of each variate: it is a net."""
     found = _all("sobol", 5, 6, 2**14)
     for column in found.T:
         counts = np.bincount((column * 1024).astype(int), minlength=1024)
