@@ -195,22 +195,23 @@ class Operation:
             Where the circuit has none, with the temperature.
         """
         T = np.asarray(temperature, dtype=float)
-        quantities = self.quantities(self.die_temperature(T))
-        found = currents(self.circuit, quantities)
+        found = currents(self.circuit, self.quantities(self.die_temperature(T)))
         for name, current in found.items():
             bad = ~((current > 0) & np.isfinite(current))
             if bad.any():
-                where = np.broadcast_to(T, bad.shape)[bad].flat[0]
-                leaks = np.broadcast_to(quantities.get("I_L", np.asarray(0.0)), bad.shape)[
-                    bad
-                ].max()
-                beside = f", where a unit junction leaks {leaks:.3g} A" if leaks > 0 else ""
-                would = np.asarray(current)[bad].flat[0]
-                raise NoSolutionError(
-                    f"{self.study.circuit.topology}: no solution at {celsius(float(where))} "
-                    f"({name} would be {would:.4g} A{beside}); accepted: a design in which every current is positive over the whole range"
-                )
+                where = float(np.broadcast_to(T, bad.shape)[bad].flat[0])
+                raise self._no_solution(where, f"{name} would be {current[bad].flat[0]:.4g} A")
         return {name: np.broadcast_to(I, T.shape) for name, I in found.items()}
+
+    def _no_solution(self, temperature: float, would: str) -> NoSolutionError:
+        leakage = self._device.get("I_L")
+        leaks = 0.0 if leakage is None else float(leakage.value(np.asarray(temperature)))
+        beside = f", where a unit junction leaks {leaks:.3g} A" if leaks > 0 else ""
+        return NoSolutionError(
+            f"{self.study.circuit.topology}: no solution at {celsius(temperature)} "
+            f"({would}{beside}); accepted: a design in which every current is positive over the "
+            "whole range"
+        )
 
     def output(self, temperature: ArrayLike) -> Array:
         """Return the output current [A] at temperatures [K]."""

@@ -12,11 +12,12 @@ import numpy as np
 from tcopt.show.words import mix_words
 
 if TYPE_CHECKING:
+    from tcopt.arrays import Array
     from tcopt.check import CheckResult
     from tcopt.design import DesignResult
     from tcopt.menu import Menu
 
-__all__ = ["csv_table", "designs_csv", "menu_csv", "sweep_csv"]
+__all__ = ["csv_table", "designs_csv", "front_csv", "menu_csv", "sweep_csv"]
 
 
 def csv_table(heading: Sequence[str], rows: Iterable[Sequence[object]]) -> str:
@@ -42,8 +43,24 @@ def sweep_csv(result: CheckResult) -> str:
     causes = result.assessment.operation.causes(T)
     columns |= {f"{cause} [ppm/K]": 1e6 * share for cause, share in causes.items()}
     columns["all causes [ppm/K]"] = 1e6 * np.sum(list(causes.values()), axis=0)
+    columns |= _device_columns(result)
     rows = zip(*(column.tolist() for column in columns.values()), strict=True)
     return csv_table(list(columns), rows)
+
+
+def _device_columns(result: CheckResult) -> dict[str, Array]:
+    """Return what the design has of inversion, output resistance, heat and headroom."""
+    found, need = result.sweep, result.headroom
+    columns = {f"inversion coefficient {k} [1]": values for k, values in found.inversion.items()}
+    optional: dict[str, Array | None] = {
+        "output resistance [ohm]": found.output_resistance,
+        "supply sensitivity [1]": found.supply_sensitivity,
+        "die temperature [K]": found.die_temperature,
+        "power [W]": found.power,
+        "lowest output voltage [V]": None if need is None else need.lowest_output,
+        "lowest supply [V]": None if need is None else need.lowest_supply,
+    }
+    return columns | {name: values for name, values in optional.items() if values is not None}
 
 
 def designs_csv(result: DesignResult) -> str:
@@ -53,6 +70,12 @@ def designs_csv(result: DesignResult) -> str:
         "deviation [ppm]", "box [ppm/K]", "endpoint [ppm/K]", "slope [ppm/K]", "limit met",
         "total resistance [ohm]", "plain mirror input [A]", "plain mirror feed [ohm]",
     ]  # fmt: skip
+    silicon, sizes = result.silicon, result.sizes
+    if silicon is not None:
+        share = f"{100 * silicon.quantile:.4g} %"
+        heading += [f"box, {share} of parts [ppm/K]", "box, median [ppm/K]", "spread of value [1]"]
+    if sizes:
+        heading += ["area [m^2]", "segments", "mismatch [1]"]
     rows = []
     for rank, (found, mirror) in enumerate(
         zip(result.designs, result.plain_mirrors, strict=True), start=1
@@ -80,7 +103,30 @@ def designs_csv(result: DesignResult) -> str:
                 mirror and mirror.feed_resistance,
             ]
         )
+        if silicon is not None:
+            figures = silicon.figures[rank - 1]
+            rows[-1] += [figures.box_ppm_per_K, figures.median_box_ppm_per_K, figures.spread]
+        if sizes:
+            made = sizes[rank - 1]
+            rows[-1] += [made.area, made.segments, made.mismatch]
     return csv_table(heading, rows)
+
+
+def front_csv(result: DesignResult) -> str:
+    """Return the front of drift against area, a row each, from the smallest up."""
+    heading = ["area [m^2]", "deviation [ppm]", "box [ppm/K]"]
+    if result.silicon is not None:
+        heading.append(f"box, {100 * result.silicon.quantile:.4g} % of parts [ppm/K]")
+    rows = []
+    for point in result.front:
+        left = point.found.residual_drift
+        mixes = "; ".join(
+            f"{slot}: {mix_words(mix, digits=result.study.search.digits)}"
+            for slot, mix in point.found.operation.mixes.items()
+        )
+        over = [] if point.silicon is None else [point.silicon.box_ppm_per_K]
+        rows.append([point.area, left.deviation_ppm, left.box_ppm_per_K, *over, mixes])
+    return csv_table([*heading, "resistors"], rows)
 
 
 def menu_csv(found: Menu) -> str:

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING
 
 from tcopt.errors import InputError
 from tcopt.files import write_atomically
-from tcopt.show.csv import designs_csv, menu_csv, sweep_csv
+from tcopt.show.csv import designs_csv, front_csv, menu_csv, sweep_csv
 from tcopt.show.json import check_document, design_document, json_text, menu_document
 
 if TYPE_CHECKING:
@@ -32,10 +32,15 @@ Files = dict[str, str | bytes]
 
 def check_files(result: CheckResult) -> Files:
     """Return the document, the temperature sweep and the pictures of `check`."""
+    from tcopt.show.plots import headroom_picture  # noqa: PLC0415  matplotlib is slow to import
+
+    pictures = _design_pictures(result.assessment)
+    if result.headroom is not None:
+        pictures["headroom"] = partial(headroom_picture, result, result.headroom)
     return {
         "check.json": json_text(check_document(result)),
         "sweep.csv": sweep_csv(result),
-        **_encoded(_design_pictures(result.assessment)),
+        **_encoded(pictures),
     }
 
 
@@ -45,13 +50,21 @@ def design_files(result: DesignResult, folder: Path) -> Files:
     ``folder`` is where they will stand: the winner names its process from there.
     """
     from tcopt.finish import finished_study  # noqa: PLC0415  only where files are wanted
-    from tcopt.show.plots import resistor_map  # noqa: PLC0415  matplotlib is slow to import
+    from tcopt.show.plots import (  # noqa: PLC0415  matplotlib is slow to import
+        front_picture,
+        resistor_map,
+    )
     from tcopt.study import study_text  # noqa: PLC0415
 
     maps = {f"map_{slot}": partial(resistor_map, result, slot) for slot in result.needed}
+    front: Files = {}
+    if result.front:
+        front["front.csv"] = front_csv(result)
+        maps["front"] = partial(front_picture, result)
     return {
         "design.json": json_text(design_document(result)),
         "designs.csv": designs_csv(result),
+        **front,
         "winner.toml": study_text(finished_study(result.winner.operation), folder),
         **_encoded({**maps, **_design_pictures(result.winner)}),
     }

@@ -10,6 +10,8 @@ from typing import TYPE_CHECKING, Any
 from tcopt.assess import Assessment, Verdict
 from tcopt.drift import Drift
 from tcopt.operation import Mix, Operation
+from tcopt.show.devices_json import devices_document
+from tcopt.show.made_json import front_document, made_document, part_sizes, silicon_document
 from tcopt.traps import warnings_for
 
 if TYPE_CHECKING:
@@ -62,6 +64,7 @@ def check_document(result: CheckResult) -> Document:
         ],
         "supply_sensitivity": _listed(result.supply_sensitivity),
         "input_sensitivity": _listed(result.input_sensitivity),
+        **devices_document(result),
         "warnings": list(result.warnings),
     }
 
@@ -79,7 +82,10 @@ def design_document(result: DesignResult) -> Document:
                     "feed_resistance_ohm": mirror.feed_resistance,
                 }
             }
-            for found, mirror in zip(result.designs, result.plain_mirrors, strict=True)
+            | made_document(result, index, limit_document)
+            for index, (found, mirror) in enumerate(
+                zip(result.designs, result.plain_mirrors, strict=True)
+            )
         ],
         "bound": {
             "deviation_ppm": 1e6 * result.bound.deviation,
@@ -93,6 +99,8 @@ def design_document(result: DesignResult) -> Document:
             }
             for slot, point in result.needed.items()
         },
+        **silicon_document(result, figures_document, limit_document),
+        **front_document(result, figures_document, limit_document),
         "warnings": list(warnings_for(result.winner)),
         "examined": result.examined,
         "skipped": result.skipped,
@@ -161,7 +169,9 @@ def mix_document(mix: Mix) -> Document:
     """Return a mix: its join and its parts."""
     return {
         "join": mix.join,
-        "parts": [{"material": p.material.name, "value_ohm": p.value} for p in mix.parts],
+        "parts": [
+            {"material": p.material.name, "value_ohm": p.value, **part_sizes(p)} for p in mix.parts
+        ],
     }
 
 

@@ -6,6 +6,8 @@ matplotlib is slow to import, so nothing imports this package before a picture i
 from tcopt.show.plots.causes import causes_picture
 from tcopt.show.plots.curves import current_picture, residual_picture
 from tcopt.show.plots.encode import encoded
+from tcopt.show.plots.front import front_picture
+from tcopt.show.plots.headroom import headroom_picture
 from tcopt.show.plots.map import menu_map, resistor_map
 from tcopt.show.plots.ratio import ratio_picture
 from tcopt.show.plots.spread import (
@@ -21,6 +23,8 @@ __all__ = [
     "current_picture",
     "encoded",
     "fan_picture",
+    "front_picture",
+    "headroom_picture",
     "histogram_picture",
     "menu_map",
     "ratio_picture",

@@ -8,6 +8,7 @@ from rich.console import Group, RenderableType
 from rich.table import Table
 from rich.text import Text
 
+from tcopt.show.tables.devices import device_sections
 from tcopt.show.tables.parts import heading, listed, new_table, ppm, row, verdict
 from tcopt.show.words import circuit_words, number, range_words, target_words
 from tcopt.units import format_quantity
@@ -43,6 +44,7 @@ def check_report(result: CheckResult) -> RenderableType:
     ]
     if (sensitivity := _sensitivity(result)) is not None:
         parts += [heading("What 1 % more of it does to the output, %"), sensitivity]
+    parts += device_sections(result, _temperatures(result))
     if result.warnings:
         parts += [heading("Warnings"), listed(result.warnings)]
     return Group(*parts)
