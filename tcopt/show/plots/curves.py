@@ -118,7 +118,7 @@ def residual_picture(found: Assessment) -> Figure:
     residual = 1e6 * found.residual(T)
     figure, axes = new_figure()
     axes.plot(T - _ZERO_CELSIUS, residual, color=INK, linewidth=1.8, zorder=3)
-    note = _band(axes, found)
+    note, edges = _band(axes, found)
     axes.axhline(0, color=GREY, linewidth=0.9, zorder=1)
     _reference_line(axes, study.range.reference)
     axes.set_ylabel(pretty("I/I_target - 1 [ppm]"))
@@ -147,7 +147,9 @@ def residual_picture(found: Assessment) -> Figure:
         f"{figure_words('box_ppm_per_K', left.box_ppm_per_K)}",
         f"{note}Triangles: lowest and highest. {definitions}, here of I/I_target.",
     )
+    ends = axes.get_xlim()
     lines = [*_pieces(T - _ZERO_CELSIUS, residual), ((at, foot[0]), (at, foot[1]))]
+    lines += [((ends[0], edge), (ends[1], edge)) for edge in edges]
     place(figure, axes, labels, lines)
     return figure
 
@@ -157,11 +159,11 @@ def _pieces(x: Array, y: Array) -> list[tuple[tuple[float, float], tuple[float, 
     return list(pairwise(points))
 
 
-def _band(axes: Axes, found: Assessment) -> str:
-    """Draw the limit's band and return the words that explain it."""
+def _band(axes: Axes, found: Assessment) -> tuple[str, tuple[float, ...]]:
+    """Draw the limit's band; return the words that explain it, and where its edges are drawn."""
     limit = found.limit
     if limit is None:
-        return ""
+        return "", ()
     over, left = found.operation.study.range, found.residual_drift
     lowest, highest = 1e6 * (left.lowest.value - 1), 1e6 * (left.highest.value - 1)
     if limit.figure == "box_ppm_per_K":
@@ -177,10 +179,11 @@ def _band(axes: Axes, found: Assessment) -> str:
         height = 1.6 * reach
         axes.set_ylim(middle - height, middle + height)
         axes.axhspan(middle - height, middle + height, facecolor=GREEN, alpha=0.15, zorder=0)
-        return words.replace("Band:", "Shaded, wider than the picture:")
-    axes.axhspan(middle - half, middle + half, facecolor=GREEN, alpha=0.15, zorder=0)
-    for edge in (middle - half, middle + half):
+        return words.replace("Band:", "Shaded, wider than the picture:"), ()
+    edges = (middle - half, middle + half)
+    axes.axhspan(*edges, facecolor=GREEN, alpha=0.15, zorder=0)
+    for edge in edges:
         axes.axhline(edge, color=GREEN, linewidth=1.4, linestyle="--", zorder=1)
     top, bottom = max(highest, middle + half), min(lowest, middle - half)
     axes.set_ylim(bottom - 0.15 * (top - bottom), top + 0.15 * (top - bottom))
-    return words
+    return words, edges
