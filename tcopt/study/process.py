@@ -2,27 +2,21 @@
 
 from __future__ import annotations
 
-import math
 from collections.abc import Mapping
-from contextlib import suppress
 from pathlib import Path
 from typing import Annotated, Any
 
-from pydantic import Field, ValidationInfo, field_validator, model_validator
-from scipy.constants import Boltzmann, elementary_charge
+from pydantic import Field, ValidationInfo, field_validator
 
-from tcopt.study.deviations import Area, CommonParts, deviation
+from tcopt.study.deviations import CommonParts, deviation
 from tcopt.study.fields import (
-    Current,
     Curvature,
     Name,
     Resistance,
-    SaturationCurrent,
     Slope,
     Temperature,
     Text,
     Title,
-    Voltage,
     quantity,
     refusal,
 )
