@@ -50,7 +50,7 @@ def causes_picture(found: Assessment) -> Figure:
     over = study.range
     T = np.linspace(over.low, over.high, _POINTS)
     causes = _largest({name: 1e6 * share for name, share in found.operation.causes(T).items()})
-    total = np.sum(list(causes.values()), axis=0)
+    total = np.sum([np.zeros_like(T), *causes.values()], axis=0)
     figure, axes = new_figure()
     celsius = T - 273.15
     above, below = np.zeros_like(T), np.zeros_like(T)
