@@ -281,7 +281,7 @@ def design(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
     from tcopt.show.tables.design import design_report  # noqa: PLC0415
 
     _answer(lambda: design_document(result), lambda: design_report(result), as_json, out)
-    _exit(result.winner.limit)
+    _exit(result.verdict)
 
 
 @app.command()

@@ -82,10 +82,10 @@ def _no_coefficients(found: Assessment) -> Iterator[str]:
 
 def _few_squares(found: Assessment) -> Iterator[str]:
     for slot, part in _parts(found):
-        sheet = part.material.sheet_resistance
-        if sheet is not None and part.value / sheet < _FEW_SQUARES:
+        squares = part.squares  # of one segment, where it is drawn
+        if squares is not None and squares < _FEW_SQUARES:
             yield (
-                f"{part.material.name} in {slot} is only {part.value / sheet:.2g} squares: its end "
+                f"{part.material.name} in {slot} is only {squares:.2g} squares: its end "
                 "resistance, with a temperature coefficient of its own, counts"
             )
 

@@ -73,6 +73,7 @@ class SiliconResult:
     paper : the best design without spread
     single : the best single material, in each slot
     causes : what varied, in words
+    quantile : share of the parts that stays within the figures
     """
 
     sigma: float
@@ -82,6 +83,7 @@ class SiliconResult:
     paper: Compared
     single: Compared | None
     causes: tuple[str, ...]
+    quantile: float = QUANTILE
 
 
 def silicon_figures(found: Assessment) -> SiliconFigures:

@@ -11,6 +11,12 @@ from rich.text import Text
 
 from tcopt.circuits import GIVEN
 from tcopt.mix.point import mix_point
+from tcopt.show.tables.made import (
+    front_section,
+    silicon_section,
+    sizes_section,
+    square_micrometres,
+)
 from tcopt.show.tables.parts import PPM, heading, listed, new_table, ppm, row, verdict
 from tcopt.show.words import mix_words, number, range_words, target_words
 from tcopt.traps import warnings_for
@@ -23,6 +29,10 @@ if TYPE_CHECKING:
 
 __all__ = ["bound_sentence", "design_report"]
 
+_SILICON = (
+    " Ranked by the box drift that all but a few parts of silicon stay within; the limit is "
+    "against that."
+)
 _PLAIN_MIRROR = (
     " Plain mirror: what one without resistors in its emitters would take for the same output."
 )
@@ -41,9 +51,13 @@ def design_report(result: DesignResult) -> RenderableType:
             "Figures against the target, from the full solution with the values shown: deviation "
             "= max |I/I_target - 1|; box = (max - min)/(value at T_ref x (T_max - T_min)) of "
             "I/I_target. '+' joins in series, '||' in parallel."
+            + (_SILICON if result.silicon else "")
             + (_PLAIN_MIRROR if any(result.plain_mirrors) else "")
         ),
         verdict(result.winner, by=" by the best design"),
+        *silicon_section(result),
+        *sizes_section(result),
+        *front_section(result),
         heading("Bound"),
         Text(bound_sentence(result)),
     ]
@@ -137,7 +151,11 @@ def _designs(result: DesignResult) -> Table:
         *(["resistors"] if designed else []),
         *(heading.replace(" ", "\n") for heading, _ in varied),
     ]
-    headings += ["deviation\nppm", "box\nppm/K", *(["limit"] if limited else []), "ohm in\nall"]
+    silicon = result.silicon
+    drawn = bool(result.sizes) and all(sizes.area is not None for sizes in result.sizes)
+    headings += ["deviation\nppm", "box\nppm/K"]
+    headings += [f"box\nppm/K\n{100 * silicon.quantile:.4g} %"] if silicon else []
+    headings += [*(["limit"] if limited else []), "ohm in\nall", *(["area\num^2"] if drawn else [])]
     if mirrors:
         fed = mirrors[0] is not None and mirrors[0].feed_resistance is not None
         headings.append(f"plain\nmirror\n{'feed' if fed else 'input'}")
@@ -150,10 +168,16 @@ def _designs(result: DesignResult) -> Table:
             *(cell(found) for _, cell in varied),
         ]
         cells += [number(left.deviation_ppm), number(left.box_ppm_per_K)]
-        if found.limit is not None:
-            cells.append("met" if found.limit.met else "not met")
+        limit = found.limit
+        if silicon is not None:
+            cells.append(number(silicon.figures[index].box_ppm_per_K))
+            limit = silicon.figures[index].limit
+        if limit is not None:
+            cells.append("met" if limit.met else "not met")
         total = sum(mix.total_value for mix in found.operation.mixes.values())
         cells.append(format_quantity(total, "ohm").removesuffix("ohm").replace(" ", ""))
+        if drawn:
+            cells.append(square_micrometres(result.sizes[index].area or 0.0))
         if mirrors:
             cells.append(_plain_mirror(mirrors[index]))
         row(table, *cells)
