@@ -169,6 +169,24 @@ def test_a_part_with_another_gain_is_the_circuit_with_another_gain() -> None:
         np.testing.assert_allclose(row, by_itself, rtol=1e-12)
 
 
+def test_each_part_warms_itself() -> None:
+    """With 200 K/mW from 10 V, some 40 K: as the design of that part alone, warmed."""
+    film = material(tc1=1e-3, spread=0.1)
+    study = ptat_core(film)
+    warm = study.range.model_copy(update={"thermal_resistance": 2e5})
+    biased = study.circuit.model_copy(update={"supply": 10.0, "output_voltage": 5.0})
+    study = study.model_copy(update={"range": warm, "circuit": biased})
+    plan = plan_of(study)
+    T = np.linspace(233.15, 398.15, 5)
+    found = output_of(plan.variation, np.array([[0.0], [-2.0]]), T)
+    np.testing.assert_allclose(found[0], plan.operation.output(T), rtol=1e-10)
+    small = slot_of((film, 0.8 * 5378.0))
+    moved = plan_of(study.model_copy(update={"resistors": {"core": small}}))
+    np.testing.assert_allclose(found[1], moved.operation.output(T), rtol=1e-10)
+    cold = plan_of(study.model_copy(update={"range": plan_of(ptat_core(film)).study.range}))
+    assert np.all(found[0] > cold.operation.output(T) * 1.001)
+
+
 def _mos_core(**data: Any) -> Plan:
     device = MosTransistor(
         name="nmos", reference=T_0, threshold_voltage=0.5, threshold_slope=1e-3,

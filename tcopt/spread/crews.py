@@ -11,6 +11,7 @@ import os
 import re
 import signal
 import sys
+import warnings
 from collections.abc import Callable
 from concurrent.futures import BrokenExecutor, CancelledError, Executor, Future, ProcessPoolExecutor
 from contextlib import AbstractContextManager, contextmanager
@@ -91,11 +92,23 @@ def processes(workers: int) -> Crew:
         context = multiprocessing.get_context(method)
         pool = ProcessPoolExecutor(workers, context, initializer=_leave_interrupts_to_the_parent)
         try:
+            _copy_now(pool)
             yield pool
         finally:
             pool.shutdown(wait=True, cancel_futures=True)
 
     return Crew(opened, workers, (BrokenExecutor,))
+
+
+def _copy_now(pool: ProcessPoolExecutor) -> None:
+    """Make the pool's processes now, while no progress bar has a thread that a copy would lack.
+
+    From Python 3.12 on a copy is warned of if there are any threads. Those of numpy's
+    library for matrices know how to be copied, and the blocks multiply none.
+    """
+    with warnings.catch_warnings():
+        warnings.filterwarnings("ignore", ".*multi-threaded.*fork", DeprecationWarning)
+        pool.submit(int).result()
 
 
 def _leave_interrupts_to_the_parent() -> None:

@@ -64,6 +64,9 @@ def spread(
 ) -> SpreadResult:
     """Return what silicon makes of a finished design.
 
+    The target stays as it is stated: with shape 'over material' the load that it is meant
+    for does not move with the part.
+
     Parameters
     ----------
     study : a finished design, with spread in its process or in its own table

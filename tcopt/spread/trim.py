@@ -18,6 +18,7 @@ import numpy as np
 
 from tcopt.arrays import Array
 from tcopt.errors import InputError
+from tcopt.heating import heated_in_steps, power
 from tcopt.solve import currents
 from tcopt.spread.variation import Scale, Variation
 from tcopt.units import format_quantity
@@ -91,6 +92,8 @@ def output_of(
 ) -> Array:
     """Return the output current of each part [A], shape (parts, temperatures).
 
+    Each part warms itself by its own power, where the study has a thermal resistance.
+
     Parameters
     ----------
     variation, z : the parts, variates of shape (parts, variates)
@@ -101,9 +104,17 @@ def output_of(
     ratio: Array | float = 1.0
     if scale is not None:
         inside, ratio = _scales(insertions, scale)
-    circuit = variation.operation.circuit
-    found = currents(circuit, variation.quantities(z, temperature, inside))[circuit.currents[-1]]
+    operation = variation.operation
+    circuit = operation.circuit
     shape = (len(z), np.shape(temperature)[-1])
+    T = np.asarray(temperature, dtype=float)
+    if (resistance := operation.study.range.thermal_resistance) is not None:
+
+        def watts(die: Array) -> Array:
+            return power(operation, die, variation.quantities(z, die, inside))
+
+        T = heated_in_steps(np.broadcast_to(T, shape), resistance, watts)
+    found = currents(circuit, variation.quantities(z, T, inside))[circuit.currents[-1]]
     return np.asarray(np.broadcast_to(found * ratio, shape))
 
 
