@@ -28,8 +28,8 @@ _VOLT = 0.1
 """Change of a voltage that weighs as much as one unit of a logarithm [V]."""
 _GROWTH = 2.0
 """By how much the next step may be larger than the last."""
-_ROUNDS = 40
-_LEAST = 2.0**-4
+_ROUNDS = 12
+_LEAST = 2.0**-10
 """Smallest part of the effects that is brought in at once."""
 
 
@@ -87,7 +87,7 @@ def _limited(system: System, x: Array, block: Block, logs: Array) -> Array:
 def brought_in(
     system: System,
     block: Block,
-    starts: tuple[Start, Start],
+    start: Start,
     count: int,
     least: Mapping[str, float],
 ) -> tuple[Array, ...]:
@@ -96,8 +96,7 @@ def brought_in(
     Parameters
     ----------
     system, block : the equations, and the quantities of ``count`` points
-    starts : first guess without effects, and with all of them where that way does not
-        lead there: leakage alone, and nothing else, may make a current
+    start : first guess without effects
     least : part of an effect that has to be there from the beginning, by its name [1]
     """
     effects = [name for name in EFFECTS if name in block]
@@ -111,7 +110,7 @@ def brought_in(
     with np.errstate(all="ignore"):
         everything = np.arange(count)
         plain = at(np.zeros(count), everything)
-        x = np.array(careful(system, plain, starts[0](plain), count))
+        x = np.array(careful(system, plain, start(plain), count))
         part, more = np.zeros(count), np.ones(count)
         active = np.isfinite(x).all(axis=0)
         for _ in range(_ROUNDS):
@@ -123,10 +122,6 @@ def brought_in(
             through = np.isfinite(found).all(axis=0)
             x[:, where[through]] = found[:, through]
             part[where[through]] = goal[through]
-            more[where] *= np.where(through, 2.0, 0.25)
+            more[where] *= np.where(through, 4.0, 0.125)
             active &= more > _LEAST
-        lost = np.flatnonzero(part < 1)
-        if lost.size:
-            some = taken(block, lost)
-            x[:, lost] = careful(system, some, starts[1](some), lost.size)
-    return tuple(x)
+    return tuple(np.where(part < 1, np.nan, x))

@@ -25,8 +25,8 @@ Block = Mapping[str, Any]
 """Quantities by name: numbers, or arrays of one length."""
 Start = Callable[[Block], tuple[Any, ...]]
 """Takes a block, returns a first guess of the unknowns."""
-Rescue = Callable[[Block, int], tuple[Array, ...]]
-"""Takes a block of so many points, returns the unknowns, nan where there is no solution."""
+Rescue = Callable[[Block, list[Array]], None]
+"""Takes a block and the unknowns, nan where none were found, and mends them in place."""
 
 _BLOCK = 4096
 _FIRST_STEPS = 8
@@ -97,7 +97,7 @@ def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tup
     system : the equations
     arguments : quantities by name, broadcastable arrays
     start : first guess of the unknowns from a block of quantities
-    rescue : for points at which the first guess leads nowhere
+    rescue : for points at which the first guess leads nowhere, or to the wrong solution
     """
     shape = np.broadcast_shapes(*(value.shape for value in arguments.values()))
     size = math.prod(shape)
@@ -135,11 +135,7 @@ def _solve_block(
             lost = _iterate(system, taken(block, where), some, _STEPS)
             for value, own in zip(values, some, strict=True):
                 value[where] = np.where(lost, np.nan, own)
-        lost = np.isnan(sum(values))
-        if lost.any():
-            where = np.flatnonzero(lost)
-            for value, own in zip(values, rescue(taken(block, where), where.size), strict=True):
-                value[where] = own
+        rescue(block, values)
     return values
 
 

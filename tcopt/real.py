@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from functools import partial
 from typing import Any
 
@@ -20,8 +20,8 @@ __all__ = ["at_any_voltage", "needed", "real_of", "solution", "voltages_fit"]
 _DIODE, _EARLY = "V_D", "inverse_V_A"
 _LEAST_OF_FOLLOWED = {"inverse_beta": 1.0}
 """A follower cannot be without base currents, since it carries them."""
-_FINE = 8
-"""Halvings of the interval in which a loop changes sign, where two did not do."""
+_FINE = (10, 8)
+"""Halvings and rounds of a closer look round."""
 _PINNED_CURRENT, _SOME_DROP = "I_pinned", 0.1
 _RATIOS = (0.5, 1e-2, 1e2, 1e-4, 1e4)
 """Other currents over the output, from which the search for a resistance starts."""
@@ -52,9 +52,7 @@ def at_any_voltage(circuit: Numerics, arguments: Mapping[str, Any]) -> tuple[Arr
     return newton.solve(system, arguments, start, _rescue(circuit, system, start))
 
 
-def voltages_fit(
-    circuit: Numerics, arguments: Mapping[str, Any], found: tuple[Array, ...]
-) -> Array:
+def voltages_fit(circuit: Numerics, arguments: Mapping[str, Any], found: Sequence[Array]) -> Any:
     """Say where the transistors have the voltages for which their laws are made.
 
     The output's counts where its Early effect does.
@@ -65,7 +63,7 @@ def voltages_fit(
     with np.errstate(over="ignore", invalid="ignore"):
         for voltage in real_of(circuit).across(*found, **arguments):
             fit = fit & ((voltage > 0) | (arguments[_EARLY] == 0))
-    return np.asarray(fit)
+    return np.broadcast_to(fit, np.shape(found[0]))
 
 
 def _last(circuit: Numerics) -> str:
@@ -96,10 +94,22 @@ def _start(circuit: Numerics) -> newton.Start:
 def _rescue(circuit: Numerics, system: newton.System, start: newton.Start) -> newton.Rescue:
     """Return what is tried where the first guess leads nowhere."""
     least = _LEAST_OF_FOLLOWED if circuit.followed else {}
-    fine = looked_round(real_of(circuit).loops, circuit.unknowns, _FINE)
+    fine = looked_round(real_of(circuit).loops, circuit.unknowns, *_FINE)
 
-    def rescue(block: newton.Block, count: int) -> tuple[Array, ...]:
-        return brought_in(system, block, (start, fine), count, least)
+    def rescue(block: newton.Block, found: list[Array]) -> None:
+        lost = np.flatnonzero(np.isnan(found[0]))
+        if lost.size:
+            brought = brought_in(system, newton.taken(block, lost), start, lost.size, least)
+            for value, own in zip(found, brought, strict=True):
+                value[lost] = own
+        # leakage alone may make a current, and of two solutions the wrong one may be met
+        wrong = np.flatnonzero(~voltages_fit(circuit, block, found))
+        if wrong.size:
+            some = newton.taken(block, wrong)
+            again = careful(system, some, fine(some), wrong.size)
+            there = np.isfinite(again[0])
+            for value, own in zip(found, again, strict=True):
+                value[wrong[there]] = own[there]
 
     return rescue
 
@@ -212,24 +222,19 @@ def _pinned_rescue(
     guesses: list[newton.Start] = [look]
     guesses += [partial(_near_the_output, unknowns, ratio=ratio) for ratio in _RATIOS]
 
-    def rescue(block: newton.Block, count: int) -> tuple[Array, ...]:
+    def rescue(block: newton.Block, found: list[Array]) -> None:
         """Start from all guesses at once, and take the first that leads somewhere."""
-        answers = [np.full(count, np.nan) for _ in unknowns]
-        possible = np.flatnonzero(np.broadcast_to(np.isfinite(block[last]), count))
-        if possible.size == 0:
-            return tuple(answers)
-        some = newton.taken(block, possible)
-        with np.errstate(all="ignore"):
-            rows = [[np.broadcast_to(v, possible.size) for v in g(some)] for g in guesses]
-            all_at_once = {
-                name: v if np.ndim(v) == 0 else np.tile(v, len(guesses)) for name, v in some.items()
-            }
-            started = tuple(map(np.concatenate, zip(*rows, strict=True)))
-            found = careful(system, all_at_once, started, possible.size * len(guesses))
-        table = np.reshape(found, (len(unknowns), len(guesses), possible.size))
+        lost = np.flatnonzero(np.isnan(found[0]) & np.isfinite(block[last]))
+        if lost.size == 0:
+            return
+        some = newton.taken(block, lost)
+        rows = [[np.broadcast_to(v, lost.size) for v in guess(some)] for guess in guesses]
+        many = {n: v if np.ndim(v) == 0 else np.tile(v, len(guesses)) for n, v in some.items()}
+        started = tuple(map(np.concatenate, zip(*rows, strict=True)))
+        again = careful(system, many, started, lost.size * len(guesses))
+        table = np.reshape(again, (len(unknowns), len(guesses), lost.size))
         first = np.argmax(np.isfinite(table[0]), axis=0)
-        for answer, values in zip(answers, table, strict=True):
-            answer[possible] = values[first, np.arange(possible.size)]
-        return tuple(answers)
+        for value, values in zip(found, table, strict=True):
+            value[lost] = values[first, np.arange(lost.size)]
 
     return rescue

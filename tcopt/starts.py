@@ -15,7 +15,7 @@ __all__ = ["from_above", "from_currents", "looked_round", "some_voltage"]
 _TOP, _BOTTOM = 5.0, -45.0
 """Logarithms of currents [A] between which is looked: 150 A to 3e-20 A."""
 _COARSE = 10.0
-_HALVINGS = 2
+_HALVINGS = 6
 _EARLY = "inverse_V_A"
 _LEAST_VOLTAGE, _JUNCTION = 0.1, 0.65
 
@@ -48,7 +48,10 @@ def from_currents(
 
 
 def looked_round(
-    loops: Callable[..., Any], unknowns: tuple[str, ...], halvings: int = _HALVINGS
+    loops: Callable[..., Any],
+    unknowns: tuple[str, ...],
+    halvings: int = _HALVINGS,
+    rounds: int = 1,
 ) -> Start:
     """Return a guess just above the largest current at which each loop in turn holds.
 
@@ -61,18 +64,20 @@ def looked_round(
     loops : takes unknowns and quantities, returns what is left of each loop
     unknowns : their names, in the order of the loops
     halvings : of the interval in which the loop changes sign
+    rounds : of going through the loops; the first assumes some voltage across the
+        diode-connected transistor, each later one goes half the way to what follows
     """
 
     def guess(block: Block) -> tuple[Any, ...]:
-        voltage = some_voltage(block)
-        values = {n: 0.0 if n.startswith("log_") else voltage for n in unknowns}
+        values = {n: 0.0 if n.startswith("log_") else some_voltage(block) for n in unknowns}
         with np.errstate(all="ignore"):
-            for k, name in enumerate(unknowns):
-                if name.startswith("log_"):
-                    values[name] = from_above(loops, values, name, k, block, halvings)
-                else:
-                    left = loops(**values, **block)[k]
-                    values[name] = np.fmax(voltage - left, _LEAST_VOLTAGE)
+            for number in range(rounds):
+                for k, name in enumerate(unknowns):
+                    if name.startswith("log_"):
+                        values[name] = from_above(loops, values, name, k, block, halvings)
+                    else:
+                        left = loops(**values, **block)[k] * (0.5 if number else 1)
+                        values[name] = np.fmax(values[name] - left, _LEAST_VOLTAGE)
         return tuple(values.values())
 
     return guess
