@@ -12,7 +12,7 @@ ideal bipolar ones draw none: their outputs do not feel each other.
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from functools import partial
 from typing import TYPE_CHECKING
@@ -38,6 +38,8 @@ _CAUSE = "base current of the other outputs"
 _BETA = INVERSE["beta"]
 _STEPS = 60
 _REMEMBERED = 8
+_Memory = dict[bytes, Array]
+"""Results by the bytes of their temperatures."""
 
 
 def draws_base_current(study: Study) -> bool:
@@ -55,7 +57,8 @@ class Cascade:
     """
 
     alone: Mapping[str, Operation]
-    _bases: dict[bytes, Array] = field(default_factory=dict, compare=False, repr=False)
+    _bases: _Memory = field(default_factory=dict, compare=False, repr=False)
+    _slopes: _Memory = field(default_factory=dict, compare=False, repr=False)
 
     @property
     def is_coupled(self) -> bool:
@@ -83,12 +86,7 @@ class Cascade:
             Where there is none, with the temperature.
         """
         T = np.asarray(temperature, dtype=float)
-        key = T.tobytes()
-        if key not in self._bases:
-            for old in list(self._bases)[: -_REMEMBERED + 1]:
-                del self._bases[old]
-            self._bases[key] = self._solved(T.ravel())
-        return np.asarray(self._bases[key].reshape(-1, *T.shape))
+        return _remembered(self._bases, T.ravel(), self._solved).reshape(-1, *T.shape)
 
     def propagated(self, temperature: Array, shares: Mapping[str, Array]) -> dict[str, Array]:
         """Return what becomes of relative changes of the outputs once the others follow.
@@ -101,7 +99,7 @@ class Cascade:
         """
         if not self.is_coupled:
             return dict(shares)
-        answer = self._settled(temperature, np.stack(list(shares.values())), 0.0)[0]
+        answer = self._settled(temperature, np.stack(list(shares.values())))[0]
         return dict(zip(shares, answer, strict=True))
 
     @property
@@ -139,39 +137,57 @@ class Cascade:
     def _slope(self, k: int, temperature: Array) -> Array:
         """Return ``d ln I_others/dT`` of the k-th output [1/K], all outputs following."""
         T = np.asarray(temperature, dtype=float)
-        causes = [operation.causes(T).values() for operation in self._held(T)]
-        held = np.stack([np.sum(list(shares), axis=0) for shares in causes])
-        return np.asarray(self._settled(T, held, 1.0)[1][k])
+        return np.asarray(_remembered(self._slopes, T, self._all_slopes)[k])
 
-    def _held(self, T: Array) -> list[Operation]:
-        """Return the outputs with the base currents of the others as they are, but fixed."""
-        return [
-            replace(operation, other_bases=_held_at(self._load(k, T)))
-            for k, operation in enumerate(self._operations)
-        ]
+    def _all_slopes(self, T: Array) -> Array:
+        return self._settled(T, None)[1]
 
-    def _settled(self, T: Array, held: Array, by_temperature: float) -> tuple[Array, Array]:
+    def _settled(self, T: Array, held: Array | None) -> tuple[Array, Array]:
         """Return changes of outputs and of loads when all follow, from those with loads held.
 
         ``t_k = p_k + e_k w_k``, ``w_k = (sum over the others of db_i)/I_others,k`` and
         ``db_i = (I_i t_i - N_i I_L lambda)/beta + kappa b_i``, with lambda and kappa the
-        slopes of I_L and of 1/beta, which count for a change of temperature alone.
+        slopes of I_L and of 1/beta, which count for a change of temperature alone: without
+        ``held`` that is the change, and p_k the local temperature coefficient.
         """
-        operations = self._held(T)
         bases = self.base_currents(T)
+        others = _others(len(bases))
+        load = others @ bases
+        operations = [
+            replace(operation, other_bases=_held_at(load[k]))
+            for k, operation in enumerate(self._operations)
+        ]
+        by_quantity = [operation.sensitivities(T) for operation in operations]
+        steepness = np.stack([each["I_others"] for each in by_quantity])
         device = device_quantities(operations[0].study.circuit)
         gain, leak = (device[name].value(T) for name in (_BETA, "I_L"))
-        kappa, lam = (by_temperature * device[name].slope(T) for name in (_BETA, "I_L"))
-        outputs = np.stack([operation.output(T) for operation in operations])
-        steepness = np.stack([o.sensitivities(T)["I_others"] for o in operations])
-        others = _others(len(operations))
-        load = others @ bases
-        own = kappa * bases - lam * self._areas * leak * gain
-        pull = (steepness / load).T[:, :, None] * others * (gain * outputs).T[:, None, :]
+        leaking = self._areas * leak * gain
+        own = np.zeros_like(bases)
+        if held is None:
+            slopes = [operation.quantity_slopes(T) for operation in operations]
+            held = np.stack([_total(*pair) for pair in zip(by_quantity, slopes, strict=True)])
+            own = device[_BETA].slope(T) * bases - device["I_L"].slope(T) * leaking
+        into_base = bases + leaking
+        pull = (steepness / load).T[:, :, None] * others * into_base.T[:, None, :]
         right = held + steepness * (others @ own) / load
-        matrix = np.eye(len(operations)) - pull
+        matrix = np.eye(len(bases)) - pull
         totals = np.asarray(np.linalg.solve(matrix, right.T[..., None])[..., 0].T, dtype=float)
-        return totals, others @ (gain * outputs * totals + own) / load
+        return totals, others @ (into_base * totals + own) / load
+
+
+def _remembered(known: _Memory, T: Array, solve: Callable[[Array], Array]) -> Array:
+    """Return what is known for these temperatures, or find it; the oldest is forgotten."""
+    key = T.tobytes()
+    if key not in known:
+        for old in list(known)[: 1 - _REMEMBERED]:
+            del known[old]
+        known[key] = solve(T)
+    return known[key]
+
+
+def _total(by_quantity: Mapping[str, Array], slopes: Mapping[str, Array]) -> Array:
+    """Return the local temperature coefficient [1/K] from sensitivities and slopes."""
+    return np.asarray(sum(by_quantity[q] * slopes[q] for q in slopes if q in by_quantity))
 
 
 def _held_at(load: Array) -> DeviceQuantity:
