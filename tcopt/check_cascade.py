@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from contextlib import contextmanager
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from tcopt.arrays import Array
 from tcopt.assess import Verdict
@@ -122,25 +123,35 @@ def named(name: str) -> Iterator[None]:
 def _with_others_following(
     cascade: Cascade, outputs: Mapping[str, CheckResult]
 ) -> dict[str, CheckResult]:
-    """Return the results with sensitivities that take in how the other outputs follow."""
+    """Return the results with sensitivities that take in how the other outputs follow.
 
-    def settled(held: Mapping[str, tuple[float, ...] | None]) -> dict[str, tuple[float, ...]]:
-        shares = {name: np.array(values) for name, values in held.items() if values is not None}
-        if len(shares) < len(held):
-            return {}
-        moved = cascade.propagated(_places(cascade), shares)
-        return {name: tuple(map(float, values)) for name, values in moved.items()}
+    How far an output follows itself, by way of the others, is of second order in the
+    base currents, and left out of the output resistance.
+    """
+    places, T = _places(cascade), next(iter(outputs.values())).temperature
 
-    by_supply = settled({name: found.supply_sensitivity for name, found in outputs.items()})
-    by_input = settled({name: found.input_sensitivity for name, found in outputs.items()})
+    def settled(T: Array, read: Callable[[CheckResult], ArrayLike | None]) -> dict[str, Array]:
+        held = {name: read(found) for name, found in outputs.items()}
+        shares = {name: np.asarray(value) for name, value in held.items() if value is not None}
+        return cascade.propagated(T, shares) if len(shares) == len(held) else {}
+
+    by_input = settled(places, lambda found: found.input_sensitivity)
+    by_supply = settled(places, lambda found: found.supply_sensitivity)
+    swept = settled(T, lambda found: found.sweep.supply_sensitivity)
     return {
         name: replace(
             found,
-            supply_sensitivity=by_supply.get(name),
-            input_sensitivity=by_input.get(name),
+            input_sensitivity=_floats(by_input.get(name)),
+            supply_sensitivity=_floats(by_supply.get(name)),
+            sweep=replace(found.sweep, supply_sensitivity=swept.get(name)),
+            sweep_at_places=replace(found.sweep_at_places, supply_sensitivity=by_supply.get(name)),
         )
         for name, found in outputs.items()
     }
+
+
+def _floats(values: Array | None) -> tuple[float, ...] | None:
+    return None if values is None else tuple(map(float, values))
 
 
 def _places(cascade: Cascade) -> Array:

@@ -169,6 +169,11 @@ def test_sensitivities_take_in_how_the_others_follow(name: str, by: str, key: st
         exact = oracle.log_slope(CHAINS[name], float(T), by)
         for k, result in enumerate(outputs.values()):
             assert getattr(result, key)[place] == pytest.approx(float(exact[k]), abs=SLOPE)
+            if by == "supply":
+                for swept in (result.sweep, result.sweep_at_places):
+                    assert swept.supply_sensitivity is not None
+                    ends = swept.supply_sensitivity[[0, -1]][place // 2]
+                    assert place == 1 or ends == pytest.approx(float(exact[k]), abs=SLOPE)
 
 
 def test_others_held_is_another_sensitivity() -> None:
