@@ -262,7 +262,8 @@ def design(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
 
     The input current, too, where it is left open. Shows the best designs beside the bound that
     no mix of the menu can beat. With --out the best one is written as a finished study,
-    winner.toml, which check reads.
+    winner.toml, which check reads. Several outputs of one reference branch, in tables
+    [outputs.NAME], are designed and solved together.
     """
     from tcopt.mix import search  # noqa: PLC0415
     from tcopt.show.progress import progress  # noqa: PLC0415
@@ -289,6 +290,7 @@ def check(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
     """Check a finished design: drift, its causes, limit, traps.
 
     A design is finished when every resistor has its parts and every choice is a single value.
+    Several outputs of one reference branch are solved together.
     """
     from tcopt import check as checking  # noqa: PLC0415
     from tcopt.study import CascadeStudy, load_question  # noqa: PLC0415
