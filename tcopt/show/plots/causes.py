@@ -32,6 +32,8 @@ __all__ = ["causes_picture"]
 _POINTS = 97
 _LINE = 22
 """Characters after which a cause's name is broken."""
+_NOTHING = 1e-9
+"""Share of the largest cause up to which one is rounding."""
 _LAYERS = (
     (BLUE, ""), (ORANGE, "///"), (SKY, ""), (VERMILLION, ".."), ("#f0e442", "xxx"),
     (GREEN, "\\\\\\"), ("#cc79a7", "++"), ("#bbbbbb", "o"),
@@ -83,8 +85,9 @@ def causes_picture(found: Assessment) -> Figure:
 
 def _largest(causes: dict[str, Array]) -> dict[str, Array]:
     """Return the causes, largest first, those beyond the number of layers added up."""
-    ordered = sorted(causes, key=lambda name: -float(np.abs(causes[name]).max()))
-    ordered = [name for name in ordered if np.abs(causes[name]).max() > 0]
+    sizes = {name: float(np.abs(share).max()) for name, share in causes.items()}
+    ordered = sorted(causes, key=lambda name: -sizes[name])
+    ordered = [name for name in ordered if sizes[name] > _NOTHING * max(sizes.values())]
     room = len(_LAYERS) - 1 if len(ordered) > len(_LAYERS) else len(ordered)
     found = {name: causes[name] for name in ordered[:room]}
     if rest := ordered[room:]:
