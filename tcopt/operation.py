@@ -195,22 +195,23 @@ class Operation:
             Where the circuit has none, with the temperature.
         """
         T = np.asarray(temperature, dtype=float)
-        found = currents(self.circuit, self.quantities(self.die_temperature(T)))
-        for name, current in found.items():
-            bad = ~((current > 0) & np.isfinite(current))
+        quantities = self.quantities(self.die_temperature(T))
+        found = currents(self.circuit, quantities)
+        for current in found.values():
+            bad = np.broadcast_to(~((current > 0) & np.isfinite(current)), T.shape)
             if bad.any():
-                where = float(np.broadcast_to(T, bad.shape)[bad].flat[0])
-                raise self._no_solution(where, f"{name} would be {current[bad].flat[0]:.4g} A")
+                at = np.flatnonzero(bad)[0]
+                there = {n: np.broadcast_to(q, T.shape).flat[at] for n, q in quantities.items()}
+                raise self._no_solution(float(T.flat[at]), there)
         return {name: np.broadcast_to(I, T.shape) for name, I in found.items()}
 
-    def _no_solution(self, temperature: float, would: str) -> NoSolutionError:
-        leakage = self._device.get("I_L")
-        leaks = 0.0 if leakage is None else float(leakage.value(np.asarray(temperature)))
-        beside = f", where a unit junction leaks {leaks:.3g} A" if leaks > 0 else ""
+    def _no_solution(self, temperature: float, there: Mapping[str, float]) -> NoSolutionError:
+        from tcopt.reasons import reason  # noqa: PLC0415  only where there is something to explain
+
         return NoSolutionError(
             f"{self.study.circuit.topology}: no solution at {celsius(temperature)} "
-            f"({would}{beside}); accepted: a design in which every current is positive over the "
-            "whole range"
+            f"({reason(self.circuit, there)}); accepted: a design in which every current is "
+            "positive and every transistor on over the whole range"
         )
 
     def output(self, temperature: ArrayLike) -> Array:
