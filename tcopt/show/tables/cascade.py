@@ -10,7 +10,6 @@ from rich.table import Table
 from rich.text import Text
 
 from tcopt.show.tables.check import check_report
-from tcopt.show.tables.design import design_report
 from tcopt.show.tables.parts import heading, listed, new_table, row
 from tcopt.show.words import mix_words, number, range_words, target_words
 from tcopt.units import format_quantity
@@ -49,6 +48,8 @@ def cascade_check_report(result: CascadeCheck) -> RenderableType:
 
 def cascade_design_report(result: CascadeDesign) -> RenderableType:
     """Return the report of `design`: the best design of all outputs, the inputs, then each."""
+    from tcopt.show.tables.design import design_report  # noqa: PLC0415  what check does not need
+
     best = result.winner
     parts: list[RenderableType] = [
         *_title(result.study, best.input_current),
