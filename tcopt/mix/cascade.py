@@ -19,7 +19,7 @@ from scipy.optimize import minimize_scalar
 
 from tcopt.assess import Assessment, assess, require_supply
 from tcopt.cascade import Cascade, bases_at_target
-from tcopt.check_cascade import overall_verdict, warnings_for_cascade
+from tcopt.check_cascade import named, overall_verdict, warnings_for_cascade
 from tcopt.design import Bound, DesignResult
 from tcopt.design_cascade import CascadeCandidate, CascadeDesign
 from tcopt.devices import DeviceQuantity
@@ -297,7 +297,11 @@ def _smooth(operation: Operation) -> DeviceQuantity | None:
 def _candidate(outputs: Mapping[str, _Output]) -> CascadeCandidate:
     """Return the complete design of the best design of each output."""
     operations = {name: output.designs[0].operation for name, output in outputs.items()}
-    return _complete({name: assess(each) for name, each in _together(operations).items()})
+    found: dict[str, Assessment] = {}
+    for name, each in _together(operations).items():
+        with named(name):
+            found[name] = assess(each)
+    return _complete(found)
 
 
 def _complete(found: Mapping[str, Assessment]) -> CascadeCandidate:
