@@ -18,7 +18,7 @@ from tcopt.circuits import SELF
 from tcopt.laws import generated
 from tcopt.operation import Operation
 from tcopt.solve import Numerics, needed_resistance, numerics
-from tcopt.symbols import resistance_name
+from tcopt.symbols import INVERSE, resistance_name
 
 __all__ = ["StartUp", "start_up"]
 
@@ -86,7 +86,8 @@ def start_up(operation: Operation) -> StartUp | None:
     )
     has_mirror = "mirror_ratio" in made.circuit.choices
     # two junctions compared, or a junction's voltage over the resistor
-    drive = current * _SMALL * (small - R) / _slope_voltage(quantities)
+    through = _emitter_current(current * _SMALL, quantities)
+    drive = through * (small - R) / _slope_voltage(quantities)
     gain = np.exp(drive) if has_mirror else small / R
     forced = operation.choices.mirror_ratio if has_mirror else 1.0
     least = np.fmax(np.where(np.isnan(second), 0.0, second) * forced, _leakage(operation, die))
@@ -114,6 +115,13 @@ class _Need:
             for name, value in self.quantities.items()
         }
         return float(needed_resistance(self.loop, self.slot, np.array([current]), one)[0])
+
+
+def _emitter_current(current: Array, quantities: dict[str, Array]) -> Array:
+    """Return what a current into the second transistor's collector sends through its resistor."""
+    nothing = np.asarray(0.0)
+    junction = current - quantities["N"] * quantities.get("I_L", nothing)
+    return np.asarray(junction * (1 + quantities.get(INVERSE["beta"], nothing)))
 
 
 def _slope_voltage(quantities: dict[str, Array]) -> Array:
