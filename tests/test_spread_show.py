@@ -9,6 +9,7 @@ import os
 import subprocess
 import sys
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -192,7 +193,7 @@ def test_pictures_are_drawn_and_the_same_each_time(
 
 def test_fan_shows_bands_target_and_limit(result: SpreadResult) -> None:
     figure = plots.fan_picture(result)
-    first, last = figure.axes
+    first, _, last = figure.axes
     labels = {text.get_text() for text in first.get_legend().get_texts()}
     assert labels == {
         "99.7 % of the parts", "95 % of the parts", "68 % of the parts", "median", "target",
@@ -211,6 +212,24 @@ def test_histogram_has_the_limit_in_sight(result: SpreadResult) -> None:
     low, high = axes.get_xlim()
     assert low < 60 < high
     assert any(line.get_xdata()[0] == pytest.approx(60) for line in axes.lines)
+
+
+def test_histogram_is_logarithmic_where_trim_moves_the_figure_far(result: SpreadResult) -> None:
+    for name, factor in (("linear", 2.0), ("log", 0.05)):
+        first = result.sample.figures[0]
+        figures = np.stack([first, first, factor * first])
+        far = replace(result, sample=replace(result.sample, figures=figures))
+        judged, current = plots.histogram_picture(far).axes
+        assert judged.get_xscale() == name
+        assert current.get_xscale() == "linear"
+
+
+def test_codes_share_bars_where_there_are_many(result: SpreadResult) -> None:
+    for axes, effect in zip(plots.codes_picture(result).axes, result.stages[-1].trim, strict=True):
+        assert len(axes.patches) <= 128
+        shown = sum(bar.get_height() for bar in axes.patches)
+        counted = sum(count for _, count in effect.codes)
+        assert shown == pytest.approx(100 * counted / result.sample.drawn)
 
 
 def test_pictures_of_parts_that_are_all_alike() -> None:

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
+from matplotlib.ticker import FuncFormatter, LogLocator, NullFormatter
 
 from tcopt.arrays import Array
 from tcopt.show.plots.style import (
@@ -41,6 +42,10 @@ _BANDS = ((0.0015, 0.9985, "#d6dde4"), (0.025, 0.975, "#a9bac9"), (0.16, 0.84, "
 _SLICES = 70
 _OUTERMOST = 0.9995
 """Quantile up to which a histogram is drawn; what lies further is told."""
+_FAR_APART = 8.0
+"""Times between the medians of two stages from which on their axis is logarithmic."""
+_MOST_BARS = 128
+"""Codes of a trim beyond which neighbours share a bar."""
 _MOST_CAUSES = 9
 _LINE = 26
 """Characters after which a cause's name is broken."""
@@ -67,9 +72,8 @@ def _axes_below(height: float, rows: int, *, alike: bool = False) -> tuple[Figur
 
 @drawn
 def fan_picture(result: SpreadResult) -> Figure:
-    """Return the bands of the current against temperature, untrimmed and after the last stage."""
-    study = result.study
-    stages = result.stages if len(result.stages) < 2 else (result.stages[0], result.stages[-1])
+    """Return the bands of the current against temperature, untrimmed and after each insertion."""
+    study, stages = result.study, result.stages
     figure, every = _axes_below(2.0 + 2.5 * len(stages), len(stages), alike=True)
     top = max(float(np.nanmax(stage.fan.quantiles)) for stage in stages)
     scale, unit = prefixed(top, "A")
@@ -203,10 +207,17 @@ def _histogram(axes: Axes, result: SpreadResult, name: str) -> None:
     scale, unit = shown.factor, shown.unit
     if name == "current":
         scale, unit = prefixed(max(float(column.max()) for column in columns), "A")
+    medians = [float(np.median(column)) for column in columns]
+    logarithmic = (
+        name != "current"
+        and min(float(np.quantile(column, 1 - _OUTERMOST)) for column in columns) > 0
+        and max(medians) > _FAR_APART * min(medians)
+    )
+    cut = np.geomspace if logarithmic else np.linspace
     ends: list[float] = []
     for column, stage, look in zip(columns, result.stages, _LOOKS, strict=False):
         low, high = (scale * float(np.quantile(column, q)) for q in (1 - _OUTERMOST, _OUTERMOST))
-        edges = np.linspace(low, high, _SLICES + 1) if low < high else [0.99 * low, 1.01 * low]
+        edges = cut(low, high, _SLICES + 1) if low < high else [0.99 * low, 1.01 * low]
         counts = np.histogram(scale * column, edges)[0]
         height = counts / max(1, counts.max())
         axes.stairs(height, edges, label=stage.name, **look)
@@ -215,8 +226,15 @@ def _histogram(axes: Axes, result: SpreadResult, name: str) -> None:
     bound = _bound(result)
     if name == result.judged and bound is not None:
         ends.append(bound)
-    pad = 0.04 * (max(ends) - min(ends)) or 0.01 * max(ends) or 1.0
-    axes.set_xlim(min(ends) - pad, max(ends) + pad)
+    if logarithmic:
+        axes.set_xscale("log")
+        axes.xaxis.set_major_locator(LogLocator(subs=(1.0, 2.0, 5.0)))
+        axes.xaxis.set_major_formatter(FuncFormatter(lambda x, _: f"{x:.10g}"))
+        axes.xaxis.set_minor_formatter(NullFormatter())
+        axes.set_xlim(min(ends) / 1.15, 1.15 * max(ends))
+    else:
+        pad = 0.04 * (max(ends) - min(ends)) or 0.01 * max(ends) or 1.0
+        axes.set_xlim(min(ends) - pad, max(ends) + pad)
     axes.set_ylim(0)
     axes.set_xlabel(f"{shown.words[0].upper()}{shown.words[1:]} [{unit}]")
     axes.set_ylabel("Parts, to the fullest bin [1]")
@@ -267,6 +285,12 @@ def codes_picture(result: SpreadResult) -> Figure:
         codes = effect.insertion.codes
         values, counts = (np.array(column) for column in zip(*effect.codes, strict=True))
         wide = float(np.diff(values).min()) if len(values) > 1 else 1.0
+        together = 1 if codes is None else -(-(codes[1] - codes[0] + 1) // _MOST_BARS)
+        if together > 1:
+            bar = np.floor((values - values.min()) / together).astype(int)
+            counts = np.bincount(bar, weights=counts)
+            values = values.min() + (np.arange(len(counts)) + 0.5) * together - 0.5
+            wide = float(together)
         axes.bar(
             values, 100 * counts / drawn_parts, wide, facecolor=SKY, edgecolor=INK, linewidth=0.4
         )
@@ -279,7 +303,7 @@ def codes_picture(result: SpreadResult) -> Figure:
         what = "Code" if codes else "Scale"
         words = insertion_words(effect.insertion).replace("+-", "\N{PLUS-MINUS SIGN}")
         axes.set_xlabel(f"{what} of {pretty(words)}")
-        axes.set_ylabel("Parts [%]")
+        axes.set_ylabel("Parts [%]" if together == 1 else f"Parts [%],\nin {together} codes")
         axes.axvline(0 if codes else 1, color=GREY, linewidth=0.9, linestyle=":")
     worst = max(effect.beyond for effect in effects)
     with_title(
