@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator
 from dataclasses import replace
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -17,6 +18,9 @@ from tcopt.laws import generated
 from tcopt.operation import Operation, celsius
 from tcopt.start_up import start_up
 from tcopt.units import format_quantity
+
+if TYPE_CHECKING:
+    from tcopt.study import CircuitChoices
 
 __all__ = ["DEVICE_TRAPS"]
 
@@ -36,14 +40,18 @@ def _temperatures(found: Assessment) -> Array:
     return np.linspace(span.low, span.high, _POINTS)
 
 
-def _need(found: Assessment) -> Headroom | None:
-    return headroom(found.operation, _temperatures(found))
+def _headroom(found: Assessment) -> Iterator[str]:
+    need = headroom(found.operation, _temperatures(found))
+    if need is not None:
+        made = found.operation.study.circuit
+        yield from _saturated_output(made, need)
+        yield from _low_supply(made, need)
+        yield from _fed_dry(made, need)
 
 
-def _saturated_output(found: Assessment) -> Iterator[str]:
-    has = found.operation.study.circuit.output_voltage
-    need = _need(found)
-    if has is None or need is None or has >= need.output_limit.voltage:
+def _saturated_output(made: CircuitChoices, need: Headroom) -> Iterator[str]:
+    has = made.output_voltage
+    if has is None or has >= need.output_limit.voltage:
         return
     short = need.temperature[need.lowest_output > has]
     limit = need.output_limit
@@ -60,10 +68,8 @@ def _where(short: Array, worst: float) -> str:
     return f" from {celsius(float(short[0]))} to {celsius(float(short[-1]))}"
 
 
-def _low_supply(found: Assessment) -> Iterator[str]:
-    made = found.operation.study.circuit
-    need = _need(found)
-    if made.feed != SELF or made.supply is None or need is None or need.supply_limit is None:
+def _low_supply(made: CircuitChoices, need: Headroom) -> Iterator[str]:
+    if made.feed != SELF or made.supply is None or need.supply_limit is None:
         return
     limit, lowest = need.supply_limit, need.lowest_supply
     left = made.supply - limit.voltage
@@ -79,6 +85,20 @@ def _low_supply(found: Assessment) -> Iterator[str]:
             f"only {left:.3f} V of the {made.supply:.4g} V supply are left over at "
             f"{celsius(limit.temperature)}, where {limit.set_by} needs {limit.voltage:.3f} V"
             f"{on_top}"
+        )
+
+
+def _fed_dry(made: CircuitChoices, need: Headroom) -> Iterator[str]:
+    """Say where a supply that feeds the input has little left for its resistors."""
+    if made.feed != SUPPLY or made.supply is None or need.supply_limit is None:
+        return
+    limit = need.supply_limit
+    left = made.supply - limit.voltage
+    if left < 2 * _SMALL_MARGIN:
+        yield (
+            f"at {celsius(limit.temperature)} only {left:.3f} V of the {made.supply:.3g} V supply "
+            f"are left for the feed resistor: {limit.set_by} takes the rest, and more of it "
+            "towards the cold"
         )
 
 
@@ -247,26 +267,8 @@ def _moving_transconductance(found: Assessment) -> Iterator[str]:
         )
 
 
-def _fed_dry(found: Assessment) -> Iterator[str]:
-    """Say where a supply that feeds the input has little left for its resistors."""
-    made = found.operation.study.circuit
-    need = _need(found)
-    if made.feed != SUPPLY or made.supply is None or need is None or need.supply_limit is None:
-        return
-    limit = need.supply_limit
-    left = made.supply - limit.voltage
-    if left < 2 * _SMALL_MARGIN:
-        yield (
-            f"at {celsius(limit.temperature)} only {left:.3f} V of the {made.supply:.3g} V supply "
-            f"are left for the feed resistor: {limit.set_by} takes the rest, and more of it "
-            "towards the cold"
-        )
-
-
 DEVICE_TRAPS: tuple[Callable[[Assessment], Iterator[str]], ...] = (
-    _saturated_output,
-    _low_supply,
-    _fed_dry,
+    _headroom,
     _cold_base_current,
     _hot_leakage,
     _leakage_rules,

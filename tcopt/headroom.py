@@ -10,7 +10,7 @@ stacks up. A bipolar transistor takes ``saturation_voltage``; a MOS transistor
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import partial
 from typing import TYPE_CHECKING
 
@@ -28,6 +28,8 @@ if TYPE_CHECKING:
     from tcopt.study import CircuitChoices
 
 __all__ = ["Headroom", "Limit", "headroom", "inversion"]
+
+_OUTPUT = "the output transistor"
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,16 +102,37 @@ def headroom(operation: Operation, temperature: Array) -> Headroom | None:
     study = operation.study
     if study.circuit.transistor is None:
         return None
-    names = _branches(operation, np.array([study.range.reference]))
-    limits = [_limit(operation, name, partial(_branch, operation, name)) for name in names]
+    needs = _Needs(operation)
+    branches = dict(needs.at(temperature))
+    lowest_output = branches.pop(_OUTPUT)
+    limits = [_limit(operation, name, partial(needs.of, name)) for name in branches]
     return Headroom(
         temperature=temperature,
-        lowest_output=_lowest_output(operation, temperature),
-        output_limit=_limit(operation, "the output transistor", partial(_lowest_output, operation)),
-        branches=_branches(operation, temperature),
+        lowest_output=lowest_output,
+        output_limit=_limit(operation, _OUTPUT, partial(needs.of, _OUTPUT)),
+        branches=branches,
         supply_limit=max(limits, key=lambda limit: limit.voltage) if limits else None,
         complete=study.circuit.feed not in {GIVEN, SELF} or _has_mirror(study.circuit),
     )
+
+
+@dataclass(frozen=True)
+class _Needs:
+    """All voltages that a design needs, each set of temperatures solved once."""
+
+    operation: Operation
+    _known: dict[bytes, dict[str, Array]] = field(default_factory=dict)
+
+    def at(self, temperature: Array) -> dict[str, Array]:
+        key = temperature.tobytes()
+        if key not in self._known:
+            output = _lowest_output(self.operation, temperature)
+            branches = _branches(self.operation, temperature, output)
+            self._known[key] = {_OUTPUT: output, **branches}
+        return self._known[key]
+
+    def of(self, name: str, temperature: Array) -> Array:
+        return self.at(temperature)[name]
 
 
 def _has_mirror(made: CircuitChoices) -> bool:
@@ -145,11 +168,7 @@ def _lowest_output(operation: Operation, temperature: Array) -> Array:
     return np.asarray(values["V_foot"] + across)
 
 
-def _branch(operation: Operation, name: str, temperature: Array) -> Array:
-    return _branches(operation, temperature)[name]
-
-
-def _branches(operation: Operation, temperature: Array) -> dict[str, Array]:
+def _branches(operation: Operation, temperature: Array, lowest_output: Array) -> dict[str, Array]:
     """Return the supply that each branch needs [V], with what stands on top of it."""
     made = operation.study.circuit
     values = operation.node_values(temperature)
@@ -160,7 +179,7 @@ def _branches(operation: Operation, temperature: Array) -> dict[str, Array]:
     across, diode = _mirror(operation, temperature)
     return {
         "the branch of the first transistor": values["V_in"] + across,
-        "the branch of the second transistor": _lowest_output(operation, temperature) + diode,
+        "the branch of the second transistor": lowest_output + diode,
     }
 
 

@@ -30,6 +30,10 @@ if TYPE_CHECKING:
 __all__ = ["Choices", "Mix", "Operation", "celsius", "fixed_mixes"]
 
 
+_REMEMBERED = 32
+"""Sets of temperatures whose die temperatures are kept."""
+
+
 def celsius(temperature: float) -> str:
     """Return a temperature [K] as text in degC, for messages."""
     return f"{temperature - 273.15:.4g} degC"
@@ -117,6 +121,10 @@ class Operation:
         made = self.study.circuit
         return nodes_of(made.topology, made.feed, made.device)
 
+    @cached_property
+    def _dies(self) -> dict[tuple[tuple[int, ...], bytes], Array]:
+        return {}
+
     def die_temperature(self, temperature: ArrayLike) -> Array:
         """Return the circuit's temperatures [K] where those of the range are these.
 
@@ -129,7 +137,12 @@ class Operation:
         resistance = self.study.range.thermal_resistance
         if resistance is None:
             return T
-        return heated(T, resistance, lambda die: power_and_slope(self, die))
+        key = (T.shape, T.tobytes())
+        if key not in self._dies:
+            for old in list(self._dies)[: -_REMEMBERED + 1]:
+                del self._dies[old]
+            self._dies[key] = heated(T, resistance, lambda die: power_and_slope(self, die))
+        return self._dies[key]
 
     def pinned_die_temperature(self, slot: str, output: ArrayLike, temperature: ArrayLike) -> Array:
         """Return the same with the output [A] held by the resistance of a slot; nan without one."""
