@@ -17,7 +17,7 @@ from tcopt.mix.program import best_fit
 from tcopt.mix.question import Question
 from tcopt.mix.sampled import SiliconFigures, silicon_figures
 from tcopt.mix.single import Best
-from tcopt.mix.within import Progress, candidates, portion, require_some
+from tcopt.mix.within import WORTHLESS, Progress, candidates, portion, require_some
 from tcopt.study import Layout
 
 __all__ = ["design_on_area", "front_of", "smallest_design"]
@@ -25,6 +25,7 @@ __all__ = ["design_on_area", "front_of", "smallest_design"]
 _SHARE_OF_SEARCH = 0.6
 """Of the work, where a front is asked for as well."""
 _SINGLES = 40
+_ENOUGH = 5
 
 
 def design_on_area(question: Question, progress: Progress | None = None) -> DesignResult:
@@ -80,7 +81,8 @@ def _searched(
 def smallest_design(question: Question, layout: Layout) -> Assessment | None:
     """Return the smallest of the single materials, drawn: of one open slot, with every choice.
 
-    None with two open slots, where the designs that were found have to do.
+    Of those that come near the target at all. None with two open slots, where the designs
+    that were found have to do.
     """
     if len(question.open_slots) != 1:
         return None
@@ -102,9 +104,10 @@ def smallest_design(question: Question, layout: Layout) -> Assessment | None:
             drawn += finished(question, [fit])
         except NoSolutionError:
             continue
-        if len(drawn) >= 5:
+        if sum(each.residual_drift.deviation_ppm < WORTHLESS for each in drawn) >= _ENOUGH:
             break
-    return min(drawn, key=lambda each: area_of(each.operation, layout) or np.inf, default=None)
+    good = [each for each in drawn if each.residual_drift.deviation_ppm < WORTHLESS]
+    return min(good, key=lambda each: area_of(each.operation, layout) or np.inf, default=None)
 
 
 def front_of(

@@ -28,6 +28,14 @@ class Knob:
     low: float
     high: float
 
+    @property
+    def reach(self) -> tuple[float, float]:
+        """The logarithms of least and largest scale."""
+        return (
+            -math.inf if self.low == 0 else math.log(self.low),
+            math.inf if self.high == math.inf else math.log(self.high),
+        )
+
 
 @dataclass(frozen=True, slots=True)
 class Knobs:

@@ -77,15 +77,17 @@ def robust_fit(
         point, each = settled
         if each.max() > give_up:
             break
-        reach, new = point.worst(nodes)
-        deviation = max(reach, float(each.max()))
+        more = point.worst(nodes)
+        here = float(each.max())
+        deviation = max([here, *(worst.deviation for worst in more)])
         if best is None or deviation < best.deviation * (1 - 1e-4):
             best = SiliconFit(point.filled(), deviation, deviation, float(each[0]), point.points)
         elif deviation > 3 * best.deviation:
             break
-        if reach <= float(each.max()) * (1 + _CLOSE) + 1e-9 or len(new) == 0:
+        new = [worst.points for worst in more if worst.deviation > here * (1 + _CLOSE) + 1e-9]
+        if not new:
             break
-        point = point.without_idle(each).with_points(new, nodes)
+        point = point.without_idle(each).with_points(np.vstack(new), nodes)
     return best
 
 

@@ -13,7 +13,7 @@ from tcopt.mix.causes import share_of
 from tcopt.mix.knobs import Knob
 from tcopt.mix.offer import Offer
 from tcopt.mix.room import Room
-from tcopt.mix.worst import worst_points
+from tcopt.mix.worst import Worst, is_known, worst_points
 from tcopt.operation import Operation
 from tcopt.solve import currents, sensitivities
 from tcopt.symbols import resistance_name
@@ -180,16 +180,25 @@ class Point:
         sign = 1 if self.chosen[knob.slot].join == "series" else -1
         return np.asarray(sign * slopes[knob.slot][:, :, k] * self.values[knob.slot][k])
 
-    def worst(self, T: Array) -> tuple[float, Array]:
-        """Return the deviation at the worst point of spread, to first order, and that point."""
+    def worst(self, T: Array) -> list[Worst]:
+        """Return the worst points of spread, to first order, that are not among the scenarios."""
         typical = replace(self, points=self.points[:1], settings=self.settings[:1])
         local = typical.linear(T)
         if local is None:
-            return np.inf, np.empty((0, self.points.shape[1]))
-        off, _, knobs = local
+            return [Worst(np.inf, np.empty((0, self.points.shape[1])))]
+        off, _, rows = local
         by_cause = self.room.causes.output_log_slopes(self.filled(), T)
-        useful = [row[0] for row in knobs if np.abs(row).max() > 0]
-        return worst_points(off[0], by_cause, useful, self.room.sigma)
+        useful = [
+            (row[0], knob.reach)
+            for row, knob in zip(rows, self.room.knobs.each, strict=True)
+            if np.abs(row).max() > 0
+        ]
+        reach = useful[0][1] if useful else (-np.inf, np.inf)
+        rows_of = [row for row, _ in useful]
+        found = worst_points(off[0], by_cause, rows_of, self.room.sigma, reach)
+        return [
+            each for each in found if len(each.points) and not is_known(self.points, each.points)
+        ]
 
     def step(
         self, T: Array, trust: float, deviation: float, input_span: tuple[float, float] | None

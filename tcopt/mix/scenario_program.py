@@ -18,7 +18,7 @@ from tcopt.mix.causes import share_of
 from tcopt.mix.offer import Offer
 from tcopt.mix.program import chebyshev_nodes
 from tcopt.mix.room import Room
-from tcopt.mix.worst import worst_points
+from tcopt.mix.worst import Worst, is_known, worst_points
 from tcopt.operation import Operation
 from tcopt.solve import currents, needed_resistance
 from tcopt.symbols import resistance_name
@@ -78,15 +78,9 @@ class Program:
         middle = [float(np.clip(1.0, *pair)) for pair in self._scale_bounds()]
         self.scale = np.append(self.scale, middle[len(self.scale) :])
 
-    def take_in(self, points: Array) -> bool:
-        """Add scenarios; False if there are none, or they are there already, near enough."""
-        if len(points) == 0:
-            return False
-        near = 0.02 * np.linalg.norm(points[0])
-        if (np.linalg.norm(self.points - points[0], axis=1) < near).any():
-            return False
+    def take_in(self, points: Array) -> None:
+        """Add scenarios."""
         self._append(points)
-        return True
 
     def add_nodes(self, more: Array) -> None:
         """Add those temperatures that lie clear of the nodes there are."""
@@ -286,20 +280,24 @@ class Program:
         self.output_scale = middle
         return np.asarray(ratio / middle[:, None] - 1)
 
-    def worst(self, operation: Operation) -> tuple[float, Array]:
-        """Return the deviation at the worst points of spread, to first order, and the points."""
-        T, slot = self.nodes, self.band.slot
+    def worst(self, operation: Operation) -> list[Worst]:
+        """Return the worst points of spread, to first order, that are not among the scenarios."""
+        T, slot, knobs = self.nodes, self.band.slot, self.room.knobs
         by_resistance = operation.sensitivities(T)[resistance_name(slot)]
-        knobs = []
-        if self.room.knobs.of(slot) is not None:
-            knobs.append(by_resistance)
-        if self.room.knobs.output is not None:
-            knobs.append(np.ones_like(T))
+        rows, reach = [], (-np.inf, np.inf)
+        for knob, row in ((knobs.output, np.ones_like(T)), (knobs.of(slot), by_resistance)):
+            if knob is not None:
+                rows.append(row)
+                reach = knob.reach
+        rows.reverse()
         which = self._trimmed_part
         if which is not None:
             name = self.offer.materials[which].name
             share = share_of(operation.mixes[slot], name, self.band.die_temperature(T))
-            knobs += [by_resistance * share] if share.max() > 0 else []
+            rows += [by_resistance * share] if share.max() > 0 else []
         off = np.log(operation.output(T) / self.band.target.current(T))
         by_cause = self.room.causes.output_log_slopes(operation, T)
-        return worst_points(off, by_cause, knobs, self.room.sigma)
+        found = worst_points(off, by_cause, rows, self.room.sigma, reach)
+        return [
+            each for each in found if len(each.points) and not is_known(self.points, each.points)
+        ]

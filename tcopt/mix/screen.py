@@ -110,7 +110,7 @@ def screened(band: Band, allowed: Sequence[Offer], room: Room) -> list[Estimate]
         points = np.empty((0, causes.count))
         if len(moving):
             knobs = [] if knob is None else [knob]
-            _, near = worst_points(off[best], by_cause[best], knobs, room.sigma)
+            near = worst_points(off[best], by_cause[best], knobs, room.sigma)[0].points
             points = np.zeros((len(near), causes.count))
             points[:, moving] = near
         found.append(Estimate(offer, float(each[best]), points))

@@ -96,13 +96,16 @@ def best_silicon_fit(
             break
         solved, typical, deviation = found
         operation = program.filled(solved)
-        reach, new = program.worst(operation)
-        worst = max(reach, deviation)
+        more = program.worst(operation)
+        worst = max([deviation, *(each.deviation for each in more)])
         if best is None or worst < best.deviation:
             best = SiliconFit(operation, worst, solved.bound, typical, program.points)
         best = replace(best, bound=min(solved.bound, best.deviation), points=program.points)
-        if reach <= deviation * (1 + 2 * _CLOSE) + _FLOOR or not program.take_in(new) or try_once:
+        more = [each for each in more if each.deviation > deviation * (1 + 2 * _CLOSE) + _FLOOR]
+        if not more or try_once:
             break
+        for each in more:
+            program.take_in(each.points)
         if best.bound > give_up:
             return None
     return best

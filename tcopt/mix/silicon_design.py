@@ -23,7 +23,7 @@ __all__ = ["design_for_silicon"]
 
 _PAPER, _SEARCH, _DRAWN = 0.25, 0.7, 0.85
 """Shares of the work after which the paper search, the search, the sampling are done."""
-_KEPT_ON_PAPER = 2
+_KEPT_ON_PAPER = 1
 
 
 def design_for_silicon(question: Question, progress: Progress | None = None) -> DesignResult:

@@ -27,11 +27,11 @@ from tcopt.operation import Operation
 from tcopt.study import Layout
 from tcopt.units import format_quantity
 
-__all__ = ["Progress", "Within", "candidates", "portion", "room_of", "search_within"]
+__all__ = ["WORTHLESS", "Progress", "Within", "candidates", "portion", "room_of", "search_within"]
 
 Progress = Callable[[int, int], None]
 
-_WORTHLESS = 2e5
+WORTHLESS = 2e5
 """Deviation [ppm] beyond which what fits into an area is no design: its current is another."""
 _TIGHTENED = 3
 """Searches with a tighter limit, where drawn sizes take more than the least that was counted."""
@@ -167,7 +167,7 @@ def candidates(
         fit_in = [
             each
             for each, area in zip(made, areas, strict=True)
-            if area <= area_limit * (1 + 1e-9) and each.residual_drift.deviation_ppm < _WORTHLESS
+            if area <= area_limit * (1 + 1e-9) and each.residual_drift.deviation_ppm < WORTHLESS
         ]
         found = replace(found, designs=fit_in)
         if fit_in or not areas:

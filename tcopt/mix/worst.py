@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 from itertools import combinations
 
 import numpy as np
 
 from tcopt.arrays import Array
 
-__all__ = ["estimates", "projected", "worst_points"]
+__all__ = ["Worst", "estimates", "is_known", "projected", "worst_points"]
 
 
 def projected(profile: Array, directions: Sequence[Array]) -> Array:
@@ -26,15 +27,29 @@ def projected(profile: Array, directions: Sequence[Array]) -> Array:
     return np.asarray(profile - (profile @ q) @ q.T)
 
 
+@dataclass(frozen=True)
+class Worst:
+    """A deviation [unit of y], and the two points of spread it is at, shape (2 or 0, causes)."""
+
+    deviation: float
+    points: Array
+
+
 def worst_points(
-    off: Array, by_cause: Array, knobs: Sequence[Array], sigma: float
-) -> tuple[float, Array]:
-    """Return the largest deviation at sigma standard deviations, and the two points it is at.
+    off: Array,
+    by_cause: Array,
+    knobs: Sequence[Array],
+    sigma: float,
+    reach: tuple[float, float] = (-np.inf, np.inf),
+) -> list[Worst]:
+    """Return the largest deviations at sigma standard deviations, the largest first.
 
     ``y(T) = y_0(T) + G(T) z``, ``|z| = sigma``. A knob that moves y by one number
     times ``b(T)`` leaves half the difference of ``y/b`` between two temperatures;
     the largest such difference is at ``z = sigma dG/|dG|``. A second knob is taken
-    out by least squares. With no knob the largest ``|y|`` counts.
+    out by least squares. With no knob the largest ``|y|`` counts. What the first
+    knob cannot reach is another deviation, at the points where the mean of
+    ``y/b`` is largest.
 
     Parameters
     ----------
@@ -42,32 +57,43 @@ def worst_points(
     by_cause : G, shape (causes, n)
     knobs : what each knob does to y, shape (n,), that which rules first
     sigma : distance of the points
-
-    Returns
-    -------
-    tuple
-        the deviation, in the unit of y, and points of shape (2, causes), or of
-        shape (0, causes) where nothing varies
+    reach : least and largest number by which the first knob moves y
     """
-    if knobs:
-        first = knobs[0]
-        size = float(np.abs(first).mean())
-        others = [np.ones_like(first), *(other / first for other in knobs[1:])]
-        off, by_cause = off / first, by_cause / first
-        if len(others) > 1:
-            off, by_cause = projected(off, others), projected(by_cause, others)
-        one, two = np.array(list(combinations(range(len(off)), 2))).T
-        plain = (off[one] - off[two]) / 2
-        apart = (by_cause[:, one] - by_cause[:, two]) / 2
-    else:
-        plain, apart, size = off, by_cause, 1.0
+    if not knobs:
+        return [_largest(off, by_cause, sigma, 1.0)]
+    first = knobs[0]
+    size = float(np.abs(first).mean())
+    others = [np.ones_like(first), *(other / first for other in knobs[1:])]
+    off, by_cause = off / first, by_cause / first
+    found = []
+    level, middle = by_cause.mean(axis=1), float(off.mean())
+    beyond = sigma * float(np.linalg.norm(level)) + max(middle + reach[0], -middle - reach[1])
+    if beyond > 0:
+        point = sigma * level / np.linalg.norm(level)
+        found.append(Worst(size * beyond, np.stack([point, -point])))
+    if len(others) > 1:
+        off, by_cause = projected(off, others), projected(by_cause, others)
+    one, two = np.array(list(combinations(range(len(off)), 2))).T
+    plain, apart = (off[one] - off[two]) / 2, (by_cause[:, one] - by_cause[:, two]) / 2
+    found.append(_largest(plain, apart, sigma, size))
+    return sorted(found, key=lambda worst: -worst.deviation)
+
+
+def is_known(points: Array, new: Array) -> bool:
+    """Say whether the first of new points is, near enough, among those there are."""
+    near = 0.02 * np.linalg.norm(new[0])
+    return bool((np.linalg.norm(points - new[0], axis=1) < near).any())
+
+
+def _largest(plain: Array, apart: Array, sigma: float, size: float) -> Worst:
+    """Return the largest ``|plain + apart z|`` with ``|z| = sigma`` over the last axis."""
     length = np.sqrt((apart**2).sum(axis=0))
     total = np.abs(plain) + sigma * length
     worst = int(np.argmax(total))
     if length[worst] == 0:
-        return size * float(total[worst]), np.empty((0, len(by_cause)))
+        return Worst(size * float(total[worst]), np.empty((0, len(apart))))
     point = sigma * apart[:, worst] / length[worst] * (np.sign(plain[worst]) or 1.0)
-    return size * float(total[worst]), np.stack([point, -point])
+    return Worst(size * float(total[worst]), np.stack([point, -point]))
 
 
 def estimates(off: Array, by_cause: Array, knob: Array | None, sigma: float) -> Array:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from itertools import pairwise
 
 from matplotlib.figure import Figure
-from matplotlib.ticker import LogLocator
+from matplotlib.ticker import LogLocator, NullFormatter
 
 from tcopt.design import DesignResult, FrontPoint
 from tcopt.show.plots.labels import Label, place
@@ -49,6 +49,7 @@ def front_picture(result: DesignResult) -> Figure:
             set_scale("log")
             axis.set_major_locator(LogLocator(subs=(1, 2, 5)))
             axis.set_major_formatter(lambda value, _: f"{value:g}")
+            axis.set_minor_formatter(NullFormatter())
     axes.step(
         [*areas, 1.3 * areas[-1]], [*drifts, drifts[-1]], where="post", color=INK,
         linewidth=1.6, zorder=3,
@@ -88,6 +89,7 @@ def front_picture(result: DesignResult) -> Figure:
     )
     steps = list(zip(areas, drifts, strict=True))
     corners = [((x0, y0), (x1, y0)) for (x0, y0), (x1, _) in pairwise(steps)]
+    corners += [(steps[-1], (1.3 * areas[-1], drifts[-1]))]
     corners += [((x1, y0), (x1, y1)) for (_, y0), (x1, y1) in pairwise(steps)]
     corners += [((x, y), (1.001 * x, y)) for x, y in others]
     place(figure, axes, labels, corners)
