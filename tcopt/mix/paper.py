@@ -6,16 +6,19 @@ from collections.abc import Callable, Sequence
 
 from tcopt.assess import assess
 from tcopt.design import Bound
-from tcopt.errors import InputError
+from tcopt.errors import InputError, NoSolutionError
 from tcopt.mix.band import Band
 from tcopt.mix.joint import search_two_slots
-from tcopt.mix.program import Fit
+from tcopt.mix.program import FLOOR, Fit
 from tcopt.mix.question import Question, Spanned, open_slots
 from tcopt.mix.single import Best, Group, search_one_slot
 from tcopt.study import Study
 from tcopt.targets import target_current
 
 __all__ = ["groups_of", "search_groups"]
+
+_AGREE = 0.01
+"""Relative gap up to which what is proven of the whole menu is what its best reaches."""
 
 
 def groups_of(question: Question) -> list[Group]:
@@ -45,8 +48,10 @@ def search_groups(
     if len(slots) == 1:
         ((name, slot),) = slots.items()
         bands = [Group(Band(operation, name, target), span) for operation, span in groups]
-        best, deviation = search_one_slot(bands, slot, keep, progress)
-        return best, Bound(deviation, proven=all(span is None for _, span in groups))
+        best, proven, reached = search_one_slot(bands, slot, keep, progress)
+        # the die's own heat is taken as the target's, though what is proven is of the band
+        certain = proven >= (1 - _AGREE) * reached - FLOOR and not study.range.thermal_resistance
+        return best, Bound(proven if certain else reached, proven=certain)
     if len(slots) == 2:
         best, deviation = search_two_slots(groups, slots, target, keep, progress)
         return best, Bound(deviation, proven=False)
@@ -61,13 +66,20 @@ def search_groups(
 def _fixed_slots_only(groups: Sequence[Spanned], keep: int) -> tuple[Best, Bound]:
     """Compare the choices of a study whose resistors are all settled."""
     best = Best(keep)
+    failure: NoSolutionError | None = None
     for number, (operation, span) in enumerate(groups):
         if span is not None:
             raise InputError(
                 f"{operation.study.path}: circuit: found a range of input currents with every "
                 "resistor settled; accepted: a list of input currents, or an open slot"
             )
-        found = assess(operation)
-        deviation = found.residual_drift.deviation_ppm / 1e6
-        best.add(Fit(operation, deviation, deviation), number)
+        try:
+            deviation = assess(operation).residual_drift.deviation_ppm / 1e6
+        except NoSolutionError as error:
+            failure = failure or error
+            best.add(None, number)
+        else:
+            best.add(Fit(operation, deviation, deviation), number)
+    if failure is not None and not best.found:
+        raise failure
     return best, Bound(min(fit.deviation for fit in best.ranked()), proven=True)

@@ -9,7 +9,7 @@ from itertools import product
 import numpy as np
 
 from tcopt.assess import require_supply
-from tcopt.errors import InputError
+from tcopt.errors import InputError, NoSolutionError
 from tcopt.operation import Choices, Operation, fixed_mixes
 from tcopt.study import OpenSlot, Span, Study
 from tcopt.targets import TargetCurrent, target_current
@@ -48,11 +48,9 @@ def question_of(study: Study) -> Question:
     InputError
         If there are too many choices.
     NoSolutionError
-        If a supply lies below the voltage that the target current takes.
+        If the supply lies below the voltage that the target current takes, for every choice.
     """
-    groups = tuple(_groups(study))
-    for operation, _ in groups:
-        require_supply(study, operation.choices.area_ratio)
+    groups = _with_enough_supply(tuple(_groups(study)))
     target = target_current(study.target, study.range.reference)
     return Question(study, groups, open_slots(study), target)
 
@@ -60,6 +58,23 @@ def question_of(study: Study) -> Question:
 def open_slots(study: Study) -> dict[str, OpenSlot]:
     """Return the slots that are to be designed."""
     return {name: slot for name, slot in study.resistors.items() if isinstance(slot, OpenSlot)}
+
+
+def _with_enough_supply(groups: Sequence[Spanned]) -> tuple[Spanned, ...]:
+    """Return the choices whose junctions the supply can feed; refuse only if none is left."""
+    enough: list[Spanned] = []
+    failure: NoSolutionError | None = None
+    for group in groups:
+        operation, _ = group
+        try:
+            require_supply(operation.study, operation.choices.area_ratio)
+        except NoSolutionError as error:
+            failure = failure or error
+        else:
+            enough.append(group)
+    if failure is not None and not enough:
+        raise failure
+    return tuple(enough)
 
 
 def _groups(study: Study) -> Iterator[Spanned]:

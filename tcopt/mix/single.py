@@ -1,11 +1,9 @@
 """Search over one open slot: every allowed mix, skipping what cannot be among the best.
 
-A mix that keeps the output within e keeps ``(R - middle)/half`` of the band
-within one at every temperature, so also its root mean square over any set of
-temperatures. The least-squares residual of an offer, signs of the parts left
-free, is therefore a lower bound that costs next to nothing: offers are taken
-in its order, and one whose residual at the e of the worst design still shown
-exceeds one is skipped, with proof.
+Offers are taken in the order of a quick bound (`tcopt.mix.quick`); one that it
+shows to be worse than the worst design still shown is skipped, with proof. A
+free input current is cut into stretches, each searched like a choice of its
+own, so that the bound holds over all of them.
 """
 
 from __future__ import annotations
@@ -15,95 +13,87 @@ from dataclasses import dataclass, field
 from functools import cached_property
 
 import numpy as np
-from scipy.optimize import minimize_scalar
 
-from tcopt.arrays import Array
 from tcopt.mix.band import Band
 from tcopt.mix.offer import Offer, offers, whole_offers
-from tcopt.mix.program import Fit, best_fit, chebyshev_nodes
+from tcopt.mix.program import FLOOR, Fit, best_fit, match
+from tcopt.mix.quick import QuickBound
 from tcopt.operation import Operation
 from tcopt.study import OpenSlot
 
 __all__ = ["Best", "Group", "search_one_slot"]
 
-_NODES = 17
 _MARGIN = 1 + 1e-6
+_STRETCH = 0.5
+"""Widest stretch of a free input, in its logarithm, that is searched at once."""
 _INPUTS = 9
-_NOMINAL = 1e-3
+_SPLITS = 24
+_NOMINAL = 1e-5
+_WIDEST = 0.9
+"""Above this a band says too little for the quick bound."""
+_TIGHT = 1e-3
+"""Relative gap at which what is proven of the whole menu and what it reaches agree."""
 
 
 @dataclass(frozen=True)
 class Group:
-    """One choice of ratios and input: the band it makes, and the input's span if it is free.
-
-    A free input current is searched over a grid in its logarithm by the quick
-    bound, then by Brent's method on the program's optimum around the best of it.
-    """
+    """One choice of ratios and input: the band it makes, and the input's span if it is free."""
 
     band: Band
     input_span: tuple[float, float] | None = None
 
     @cached_property
-    def nodes(self) -> Array:
-        """The temperatures of the quick bound [K]."""
-        span = self.band.operation.study.range
-        return chebyshev_nodes(span.low, span.high, _NODES)
-
-    @cached_property
     def bands(self) -> tuple[Band, ...]:
-        """The band, or one for each input current of the grid."""
+        """The band, or one for each input current of a grid, for searches that need it settled."""
         if self.input_span is None:
             return (self.band,)
-        grid = np.geomspace(*self.input_span, _INPUTS)
-        return tuple(self.band.with_input(float(current)) for current in grid)
+        return tuple(map(self.band.with_input, np.geomspace(*self.input_span, _INPUTS).tolist()))
 
-    def fit(self, offer: Offer) -> Fit | None:
-        """Return the best mix of an offer, and the best input current if it is free."""
+    @property
+    def stretches(self) -> tuple[Band, ...]:
+        """The band, or one for each stretch of a free input, over which it is free."""
         if self.input_span is None:
-            return best_fit(self.band, offer)
-        quick = [float(residuals(band, self.nodes, [offer], _NOMINAL)[0]) for band in self.bands]
-        middle = int(np.argmin(quick))
-        logs = np.log(np.geomspace(*self.input_span, _INPUTS))
-        fits: list[Fit] = []
-
-        def deviation(log_input: float) -> float:
-            fit = best_fit(self.band.with_input(float(np.exp(log_input))), offer)
-            if fit is None:
-                return 1.0
-            fits.append(fit)
-            return fit.deviation
-
-        here = deviation(logs[middle])
-        if middle in {0, _INPUTS - 1}:
-            inwards = logs[1] - logs[0] if middle == 0 else logs[-2] - logs[-1]
-            if deviation(logs[middle] + 0.03 * inwards) > here:
-                return fits[0]  # falling out of the span: the end is the best
-        near = (logs[max(0, middle - 1)], logs[min(_INPUTS - 1, middle + 1)])
-        minimize_scalar(deviation, bounds=near, method="bounded", options={"xatol": 1e-3})
-        return min(fits, key=lambda fit: fit.deviation, default=None)
+            return (self.band,)
+        return self.band.over_input(*self.input_span).split(_STRETCH)
 
 
 @dataclass
 class Best:
-    """The best designs so far, one for each set of parts and choices."""
+    """The best designs so far, one for each set of parts and choices.
+
+    A design whose parts include all those of a better one with the same choices
+    is none: its further parts are for nothing.
+    """
 
     keep: int
-    found: dict[object, Fit] = field(default_factory=dict)
+    found: dict[tuple[int, _Parts], Fit] = field(default_factory=dict)
     examined: int = 0
     skipped: int = 0
+    _ranked: list[Fit] | None = None
 
     def add(self, fit: Fit | None, group: int) -> None:
         """Take in a design of a group of choices, unless the same parts do better already."""
         self.examined += 1
         if fit is None:
             return
-        key = (group, *_parts(fit.operation))
+        key = (group, _parts(fit.operation))
         if key not in self.found or fit.deviation < self.found[key].deviation:
             self.found[key] = fit
+            self._ranked = None
 
     def ranked(self) -> list[Fit]:
         """Return the designs, best first."""
-        return sorted(self.found.values(), key=lambda fit: fit.deviation)
+        if self._ranked is None:
+            better: dict[int, list[_Parts]] = {}
+            self._ranked = []
+            for (group, parts), fit in sorted(
+                self.found.items(), key=lambda item: item[1].deviation
+            ):
+                of_group = better.setdefault(group, [])
+                if not any(_includes(parts, fewer) for fewer in of_group):
+                    of_group.append(parts)
+                    self._ranked.append(fit)
+        return self._ranked
 
     def threshold(self) -> float:
         """Return the deviation that a newcomer must stay below to be shown [1]."""
@@ -111,44 +101,23 @@ class Best:
         return ranked[self.keep - 1].deviation if len(ranked) >= self.keep else np.inf
 
 
-def _parts(operation: Operation) -> tuple[object, ...]:
-    """Return what makes a design the same design but for its values."""
+_Parts = tuple[tuple[str, str, frozenset[str]], ...]
+"""What makes a design the same design but for its values: slot, join and materials of each mix."""
+
+
+def _parts(operation: Operation) -> _Parts:
     return tuple(
         (slot, mix.join, frozenset(part.material.name for part in mix.parts))
         for slot, mix in operation.mixes.items()
     )
 
 
-def residuals(band: Band, nodes: Array, allowed: Sequence[Offer], e: float) -> Array:
-    """Return the root mean square of ``(R - middle)/half`` that each offer leaves at least [1].
-
-    Parameters
-    ----------
-    band : the need
-    nodes : temperatures [K]
-    allowed : offers
-    e : the deviation at which the band is taken [1]
-    """
-    result = np.zeros(len(allowed))
-    for join in {offer.join for offer in allowed}:
-        edges = band.edges(nodes, join, e)
-        if not (np.isfinite(edges.low) & np.isfinite(edges.high) & (edges.low > 0)).all():
-            continue  # the quick bound says nothing about so odd a band
-        half = (edges.high - edges.low) / 2
-        side = (edges.high + edges.low) / 2 / half
-        die = band.die_temperature(nodes)
-        for index, offer in enumerate(allowed):
-            if offer.join == join:
-                q, _ = np.linalg.qr(offer.columns(die) / half[:, None])
-                left = side - q @ (q.T @ side)
-                result[index] = np.sqrt(np.mean(left**2))
-    return result
-
-
-def _least_residuals(group: Group, allowed: Sequence[Offer], e: float) -> Array:
-    """Return `residuals`, over a free input the smallest of its grid."""
-    each = np.stack([residuals(band, group.nodes, allowed, e) for band in group.bands])
-    return np.asarray(each.min(axis=0))
+def _includes(parts: _Parts, fewer: _Parts) -> bool:
+    """Say whether a design has all the parts of another, joined in the same way."""
+    return all(
+        names <= more and (join == joined or len(names) == 1)
+        for (_, joined, more), (_, join, names) in zip(parts, fewer, strict=True)
+    )
 
 
 def search_one_slot(
@@ -156,8 +125,12 @@ def search_one_slot(
     slot: OpenSlot,
     keep: int,
     progress: Callable[[int, int], None] | None = None,
-) -> tuple[Best, float]:
-    """Return the best designs of one open slot, and the bound of the whole menu [1].
+) -> tuple[Best, float, float]:
+    """Return the best designs of one open slot, and of the whole menu what is proven and reached.
+
+    The two last [1]: what no mix of any number of pieces falls below, and what
+    the best that was found reaches. They agree, except where a free input's
+    stretches would have to be cut too often for it.
 
     Parameters
     ----------
@@ -168,33 +141,58 @@ def search_one_slot(
     """
     best = Best(keep)
     allowed = offers(slot)
-    wholes: list[float] = []
-    queue: list[tuple[float, int, Offer]] = []
+    proven = reached = np.inf
+    queue: list[tuple[float, int, QuickBound, Offer]] = []
     for number, group in enumerate(groups):
-        fits = [group.fit(whole) for whole in whole_offers(slot)]
-        reached = [fit.bound for fit in fits if fit is not None]
-        if not reached:
-            best.skipped += len(allowed)
+        stretches = group.stretches
+        bound, deviation = _whole_menu(stretches, slot)
+        proven, reached = min(proven, bound), min(reached, deviation)
+        if not np.isfinite(deviation):
+            best.skipped += len(allowed) * len(stretches)
             continue
-        wholes.append(min(reached))
-        nominal = max(min(reached), 1e-5)
-        estimates = nominal * _least_residuals(group, allowed, nominal)
-        queue += [(float(e), number, offer) for e, offer in zip(estimates, allowed, strict=True)]
+        nominal = max(deviation, _NOMINAL)
+        for stretch in stretches:
+            quick = QuickBound(stretch)
+            queue += [
+                (nominal * quick.excess(offer, nominal), number, quick, offer) for offer in allowed
+            ]
     queue.sort(key=lambda item: item[0])
-    known: dict[tuple[int, float], dict[Offer, float]] = {}
-    for done, (estimate, number, offer) in enumerate(queue):
+    here: dict[tuple[int, Offer], float] = {}
+    for done, (_, number, quick, offer) in enumerate(queue):
         if progress is not None:
             progress(done, len(queue))
-        limit = best.threshold() * _MARGIN
-        if np.isfinite(limit) and estimate > limit:
-            key = (number, limit)
-            if key not in known:
-                left = _least_residuals(groups[number], allowed, min(limit, 0.9))
-                known[key] = dict(zip(allowed, map(float, left), strict=True))
-            if known[key][offer] > 1:
-                best.skipped += 1
-                continue
-        best.add(groups[number].fit(offer), number)
+        limit = min(best.threshold(), here.get((number, offer), np.inf)) * _MARGIN
+        if limit < _WIDEST and quick.excess(offer, limit) > 1:
+            best.skipped += 1
+            continue
+        fit = best_fit(quick.band, offer)
+        if fit is not None:
+            here[number, offer] = min(fit.deviation, here.get((number, offer), np.inf))
+        best.add(fit, number)
     if progress is not None:
         progress(len(queue), len(queue))
-    return best, min(wholes, default=np.inf)
+    return best, proven, reached
+
+
+def _whole_menu(stretches: Sequence[Band], slot: OpenSlot) -> tuple[float, float]:
+    """Return what is proven, and what is reached, with every material in the mix [1].
+
+    A stretch of a free input over which the proof falls short of what is
+    reached is halved (branch and bound; Land and Doig 1960, *Econometrica* 28).
+    """
+    waiting = [(stretch, whole) for whole in whole_offers(slot) for stretch in stretches]
+    proven = reached = np.inf
+    splits = _SPLITS
+    while waiting:
+        stretch, whole = waiting.pop(0)
+        if reached < _WIDEST and QuickBound(stretch).excess(whole, reached) > 1:
+            proven = min(proven, reached)
+            continue
+        fit, bound = match(stretch, whole)
+        reached = min(reached, np.inf if fit is None else fit.deviation)
+        if bound < reached * (1 - _TIGHT) - FLOOR and stretch.input_span is not None and splits > 0:
+            splits -= 1
+            waiting += [(half, whole) for half in stretch.halves()]
+        else:
+            proven = min(proven, bound)
+    return proven, reached
