@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from pathlib import Path
 from typing import Annotated, Any
 
-from pydantic import Field, ValidationInfo, field_validator
+from pydantic import Field, ValidationInfo, field_validator, model_validator
 
 from tcopt.study.deviations import CommonParts, deviation
 from tcopt.study.fields import (
@@ -98,6 +98,13 @@ class Material(Model):
         if value is not None and not value[0] < value[1]:
             raise refusal("a range that does not rise", "the lower temperature first")
         return value
+
+    @model_validator(mode="after")
+    def _ends_have_a_resistance(self) -> Material:
+        for key in ("end_tc1", "end_tc2"):
+            if getattr(self, key) is not None and self.end_resistance is None:
+                raise refusal(f"{key} without end_resistance", "both, or neither", key)
+        return self
 
 
 def _named(value: Any, info: ValidationInfo, example: str) -> Any:
