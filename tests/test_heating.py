@@ -203,3 +203,39 @@ def test_several_outputs_do_not_heat_yet(tmp_path):
     )
     with pytest.raises(InputError, match=r"range.thermal_resistance: found it with several output"):
         load_question(write(tmp_path, MENU, study))
+
+
+@pytest.mark.parametrize("on_top", [{"mirror_drop": "0.3 V"}, {"mirror_transistor": "npn"}])
+def test_a_study_with_all_of_it_reads_back_equal(on_top, tmp_path):
+    from tcopt.study import study_text
+
+    circuit = {**CORE["circuit"], "output_voltage": "2 V", **on_top}
+    study = loaded(tmp_path, {**CORE, "circuit": circuit})
+    again = tmp_path / "again.toml"
+    again.write_text(study_text(study, tmp_path), encoding="utf-8")
+    assert load_study(again) == study
+    assert study.range.thermal_resistance == 150
+
+
+def test_two_open_slots_are_designed_for_the_warm_die(tmp_path):
+    """5 V times some 0.6 mA through 5000 K/W are some 15 K; the target is met at that heat."""
+    slot = {"materials": ["poly", "diffused", "well"], "pieces": 1}
+    changes = {
+        "circuit": {
+            "topology": "ptat plus vbe", "transistor": "npn", "area_ratio": 8, "supply": "5 V",
+        },
+        "resistors": {"core": slot, "base": slot},
+        "target": {"shape": "flat", "current": "500 uA"},
+    }  # fmt: skip
+    study = load_study(
+        write(tmp_path, MENU, changed(STUDY, {**changes, "range.thermal_resistance": "5000 K/W"}))
+    )
+    found = search.design(study).winner
+    at = np.array([T_0])
+    operation = found.operation
+    rise = float((operation.die_temperature(at) - at)[0])
+    current = operation.output(at)[0] + operation.currents(at)["I_core"][0]
+    assert rise == pytest.approx(5000 * 5 * current, rel=1e-9)  # M = 1: core, core and falling
+    assert rise > 12
+    left = operation.output(at)[0] / 500e-6 - 1
+    assert abs(left) <= found.residual_drift.deviation_ppm / 1e6
