@@ -23,7 +23,14 @@ __all__ = ["Drift", "Extreme", "drift_of", "extreme_points"]
 
 _SETTLED = 3e-14
 """Size of the last coefficients, relative to the largest, at which the rest is rounding."""
+_ROUNDING = 1e-16
+_NOISE = 1e-10
+"""Size of coefficients that stand still at the highest degree, below which they are noise."""
+_SPILL = 10
+"""How far the sum of many small coefficients may exceed one of them."""
 _DEGREES = (16, 32, 64, 128, 256)
+_BETWEEN = np.array([0.0712, 0.2347, 0.4183, 0.6139, 0.8051, 0.9573])
+"""Places in a stretch, in no pattern, at which an interpolant has to be right as well."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -74,21 +81,37 @@ def extreme_points(
     edges = [low, *(k for k in knots if low < k < high), high]
     found = list(edges)
     for left, right in pairwise(edges):
-        for degree in _DEGREES:
-            proxy = Chebyshev.interpolate(function, degree, domain=[left, right])
-            size = np.abs(proxy.coef)
-            if size[-4:].max() <= _SETTLED * size.max():
-                break
-        else:
-            raise NoSolutionError(
-                f"between {left:.2f} K and {right:.2f} K the curve is too rough for its "
-                "extremes to be located; accepted: curves that are smooth between their points"
-            )
-        keep = np.flatnonzero(size > 1e-16 * size.max())[-1] + 1
-        roots = Chebyshev(proxy.coef[:keep], domain=[left, right]).deriv().roots()
+        proxy = _interpolant(function, left, right)
+        roots = proxy.deriv().roots()
         real = roots.real[np.abs(roots.imag) < 1e-6 * (right - left)]
         found += [float(r) for r in real if left < r < right]
     return np.array(sorted(set(found)))
+
+
+def _interpolant(function: Callable[[Array], Array], left: float, right: float) -> Chebyshev:
+    """Return the function as a polynomial, but for what is rounding."""
+    between = left + (right - left) * _BETWEEN
+    values = function(between)
+    tail = scale = np.inf
+    for degree in _DEGREES:
+        proxy = Chebyshev.interpolate(function, degree, domain=[left, right])
+        size = np.abs(proxy.coef)
+        scale, tail = float(size.max()), float(size[-4:].max())
+        missed = np.abs(proxy(between) - values).max()
+        if max(tail, missed / _SPILL) <= _SETTLED * scale:
+            return proxy.truncate(_above(size, _ROUNDING * scale))
+    if tail <= _NOISE * scale:
+        # a solution that is good to so many digits: what is left of it is no shape
+        return proxy.truncate(_above(size, _SPILL * tail))
+    raise NoSolutionError(
+        f"between {left:.2f} K and {right:.2f} K the curve is too rough for its "
+        "extremes to be located; accepted: curves that are smooth between their points"
+    )
+
+
+def _above(size: Array, least: float) -> int:
+    """Return how many of the coefficients are worth keeping."""
+    return int(np.flatnonzero(size > least)[-1]) + 1
 
 
 def drift_of(
