@@ -113,7 +113,8 @@ def _best_of(
     NoSolutionError
         If none of them gives a current over the whole range.
     """
-    solved: list[tuple[float, Assessment]] = []
+    T = influence.nodes
+    solved: list[tuple[float, Operation]] = []
     failure: NoSolutionError | None = None
     for chosen in choices:
         mixes = {
@@ -122,16 +123,17 @@ def _best_of(
             )
             for slot, mix in influence.operation.mixes.items()
         }
+        made = replace(influence.operation, mixes=mixes)
         try:
-            made = assess(replace(influence.operation, mixes=mixes))
+            off = np.log(made.output(T) / influence.found.target.current(T))
         except NoSolutionError as error:
             failure = error
             continue
-        solved.append((_miss(Influence(made, influence.slots), goal), made))
+        solved.append((float(np.abs(off - goal).max()), made))
     if not solved:
         raise failure or NoSolutionError("no joint choice of values; accepted: one at least")
     least = min(miss for miss, _ in solved)
-    return next(made for miss, made in solved if miss <= 1.05 * least + 1e-6)
+    return assess(next(made for miss, made in solved if miss <= 1.05 * least + 1e-6))
 
 
 def area_of(operation: Operation, layout: Layout) -> float | None:

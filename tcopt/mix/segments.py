@@ -114,40 +114,40 @@ def _options(
     influence: Influence,
 ) -> list[Option]:
     material = next(iter(parts.values())).material
-    found: list[tuple[float, Option]] = []
+    found: list[tuple[float, float, _Unit, tuple[tuple[int, int], ...]]] = []
     for unit in _units(material, list(parts.values()), _width(parts, areas, layout), layout):
         counts = [_counts(part.value / unit.value, layout) for part in parts.values()]
         for chosen in product(*counts):
-            made = {
-                place: _made(material, unit, series, parallel)
-                for place, (series, parallel) in zip(parts, chosen, strict=True)
-            }
-            if any(
-                _area(part) < (1 - 1e-9) * areas.get(place, 0.0) for place, part in made.items()
-            ):
-                continue
-            error = max(
-                abs(log(part.value / parts[place].value)) * influence.at_reference[place]
-                for place, part in made.items()
-            )
-            area = sum(resistor_area(part, layout.spacing) or 0.0 for part in made.values())
-            segments = sum(part.series * part.parallel for part in made.values())
-            found.append((error, Option(made, area, segments)))
+            error = total = 0.0
+            for (place, part), (series, parallel) in zip(parts.items(), chosen, strict=True):
+                count = series * parallel
+                if count * unit.width * unit.length < (1 - 1e-9) * areas.get(place, 0.0):
+                    break
+                off = abs(log(unit.value * series / parallel / part.value))
+                error = max(error, off * influence.at_reference[place])
+                total += count * unit.length * (unit.width + layout.spacing)
+            else:
+                found.append((error, total, unit, chosen))
     if not found:
         raise _cannot(material, parts, layout, influence)
-    found.sort(key=lambda item: (item[0], item[1].area))
-    return [option for _, option in found[:_KEPT]]
-
-
-def _area(part: Part) -> float:
-    return part.area or 0.0
+    found.sort(key=lambda item: item[:2])
+    return [
+        Option(
+            {
+                place: _made(material, unit, series, parallel)
+                for place, (series, parallel) in zip(parts, chosen, strict=True)
+            },
+            total,
+            sum(series * parallel for series, parallel in chosen),
+        )
+        for _, total, unit, chosen in found[:_KEPT]
+    ]
 
 
 def _made(material: Material, unit: _Unit, series: int, parallel: int) -> Part:
-    value = drawn_value(material, unit.width, unit.length, series, parallel)
     return Part(
         material=material,
-        value=float(f"{value:.9g}"),
+        value=float(f"{unit.value * series / parallel:.9g}"),
         width=unit.width,
         length=unit.length,
         series=series,
