@@ -334,3 +334,50 @@ def test_on_an_open_process_a_ptat_core_keeps_to_the_silicide() -> None:
     parts = {part.material.name: part for part in result.winner.operation.mixes["core"].parts}
     assert "Rsil" in parts
     assert result.silicon.figures[0].box_ppm_per_K <= result.silicon.single.silicon.box_ppm_per_K
+
+
+def test_in_two_slots_a_general_optimiser_finds_nothing_much_better() -> None:
+    study = sum_study()
+    question = question_of(study)
+    operation = question.groups[0][0]
+    causes = causes_of(operation, [(n, s.materials) for n, s in question.open_slots.items()])
+    room = Room(question.target, causes, OUTPUT, 3.0)
+    chosen = {
+        slot: Offer((MENU[a], MENU["thin_film"]), "series")
+        for slot, a in (("core", "n_diffusion"), ("base", "silicide"))
+    }
+    start = {"core": np.array([300.0, 5200.0]), "base": np.array([3e3, 6e4])}
+    fit = robust_fit(operation, chosen, start, room)
+    assert fit is not None
+    T = np.linspace(233.15, 423.15, 21)
+    drawn = np.random.default_rng(1).standard_normal((200, causes.count))
+    points = np.vstack([3 * drawn / np.linalg.norm(drawn, axis=1, keepdims=True), fit.points[1:]])
+    ratios = {m.name: causes.ratio(m, points, T) for o in chosen.values() for m in o.materials}
+    fixed = causes.quantities(operation, points, T)
+
+    def worst(x: np.ndarray) -> float:
+        values = {"core": x[:2] * 1e3, "base": x[2:] * 1e4}
+        made = {
+            resistance_name(slot): sum(
+                r * ratios[m.name] for r, m in zip(values[slot], offer.materials, strict=True)
+            )
+            for slot, offer in chosen.items()
+        }
+        ratio = currents(operation.circuit, {**fixed, **made})["I_out"]
+        ratio = ratio / question.target.current(T)
+        high, low = ratio.max(axis=1), ratio.min(axis=1)
+        return float(((high - low) / (high + low)).max())
+
+    parts = [
+        part.value / unit
+        for slot, unit in (("core", 1e3), ("base", 1e4))
+        for part in fit.operation.mixes[slot].parts
+    ]
+    ours = worst(np.array(parts))
+    found = differential_evolution(
+        worst, [(0.0, 2.0), (5.0, 6.0), (0.0, 2.0), (4.0, 8.0)], maxiter=30, popsize=6,
+        rng=np.random.default_rng(2), polish=False,
+    )  # fmt: skip
+    assert len(parts) == 4
+    assert ours <= 1.01 * fit.deviation
+    assert ours <= 1.02 * found.fun
