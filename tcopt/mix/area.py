@@ -63,8 +63,9 @@ def _searched(
     if layout.area_limit is not None and question.open_slots:
         paper = []
         if len(question.open_slots) == 2:
-            ranked = search_groups(question.study, question.groups, progress)[0].ranked()
-            paper = [fit.operation for fit in ranked[:keep]]
+            first = portion(progress, 0, 0.4)
+            ranked = search_groups(question.study, question.groups, first)[0].ranked()
+            paper, progress = [fit.operation for fit in ranked[:keep]], portion(progress, 0.4, 1)
         found = candidates(question, keep, paper, layout.area_limit, progress)
         return found.best, found.bound, found.designs
     best, bound = search_groups(question.study, question.groups, progress)

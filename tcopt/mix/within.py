@@ -12,7 +12,6 @@ from tcopt.design import Bound
 from tcopt.errors import NoSolutionError
 from tcopt.mix.answer import SPARE, SPARE_WITH_SIZES, finished
 from tcopt.mix.causes import causes_of, no_causes
-from tcopt.mix.influence import resistor_area
 from tcopt.mix.knobs import Knobs, knobs_of
 from tcopt.mix.made import area_of
 from tcopt.mix.paper import groups_of
@@ -69,7 +68,7 @@ def room_of(question: Question, area_limit: float | None = None) -> Room:
     if area_limit is None or layout is None:
         return room
     settled = sum(
-        resistor_area(part, layout.spacing) or 0.0
+        part.area_taken(layout.spacing) or 0.0
         for mix in operation.mixes.values()
         for part in mix.parts
     )
@@ -152,9 +151,11 @@ def candidates(
     count = keep + (SPARE if layout is None else SPARE_WITH_SIZES)
     counted = area_limit
     found: Within | None = None
-    for _ in range(_TIGHTENED + 1):
+    for tries in range(_TIGHTENED + 1):
+        # most often the first is the last
+        report = portion(progress, 1 - 2.0 ** (-2 * tries), 1 - 2.0 ** (-2 * tries - 2))
         best, single, bound = search_within(
-            question, room_of(question, counted), keep, paper, progress, brief=brief
+            question, room_of(question, counted), keep, paper, report, brief=brief
         )
         fits = best.ranked()[:count]
         if single is not None:
