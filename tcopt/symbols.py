@@ -64,7 +64,7 @@ NOMENCLATURE = _table(
 """Symbols that more than one place uses; a resistor slot names its own (`resistance_name`)."""
 
 INVERSE = {"beta": "inverse_beta", "V_A": "inverse_V_A"}
-"""Symbols that are infinite in the ideal transistor, and the names of their inverses in numerics."""
+"""Symbols that are infinite in the ideal transistor, and the numerics' names of their inverses."""
 
 
 def resistance_name(slot: str) -> str:

@@ -16,7 +16,7 @@ from tcopt.spread.pelgrom import device_deviation
 from tcopt.study import Part
 from tcopt.symbols import resistance_name
 
-__all__ = ["Influence", "Place", "mismatch_of", "resistor_area"]
+__all__ = ["Influence", "Place", "mismatch_of"]
 
 _NODES = 17
 
@@ -91,17 +91,6 @@ class Influence:
         """``|d ln I_out/d ln value|`` of every part at the reference."""
         T = np.array([self.operation.study.range.reference])
         return {place: abs(float(each[0])) for place, each in _by_part(self.operation, T).items()}
-
-
-def resistor_area(part: Part, spacing: float) -> float | None:
-    """Return the area that a part takes with the gaps beside its segments [m^2].
-
-    As drawn; at the narrowest where it is not; None where the data for that are missing.
-    """
-    width = part.width if part.width is not None else part.material.min_width
-    if width is None or part.squares is None:
-        return None
-    return part.squares * width * (width + spacing) * part.series * part.parallel
 
 
 def mismatch_of(operation: Operation) -> float | None:

@@ -10,7 +10,7 @@ import numpy as np
 from tcopt.arrays import Array
 from tcopt.assess import Assessment, assess
 from tcopt.errors import NoSolutionError
-from tcopt.mix.influence import Influence, Place, mismatch_of, resistor_area
+from tcopt.mix.influence import Influence, Place, mismatch_of
 from tcopt.mix.rounding import balanced_values, best_jointly
 from tcopt.mix.segments import Wanted, segment_options
 from tcopt.mix.standard import standard_options, within_tolerance
@@ -141,7 +141,7 @@ def area_of(operation: Operation, layout: Layout) -> float | None:
     total = 0.0
     for mix in operation.mixes.values():
         for part in mix.parts:
-            area = resistor_area(part, layout.spacing)
+            area = part.area_taken(layout.spacing)
             if area is None:
                 return None
             total += area

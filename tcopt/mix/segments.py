@@ -15,7 +15,7 @@ from itertools import product
 from math import ceil, floor, inf, log, sqrt
 
 from tcopt.errors import InputError, NoSolutionError
-from tcopt.mix.influence import Influence, Place, resistor_area
+from tcopt.mix.influence import Influence, Place
 from tcopt.mix.rounding import Option
 from tcopt.spread.pelgrom import device_deviation
 from tcopt.study import Layout, Material, Part, drawn_value
@@ -77,7 +77,7 @@ def least_areas(influence: Influence, layout: Layout) -> dict[Place, float]:
     left = layout.mismatch**2
     for slot, mix in influence.operation.mixes.items():
         for index, part in enumerate(mix.parts):
-            area = resistor_area(part, 0.0)
+            area = part.area_taken(0.0)
             if (slot, index) in influence.parts or area is None or part.material.matching is None:
                 continue
             own = influence.at_reference[slot, index] * device_deviation(

@@ -4,8 +4,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from tcopt.mix.influence import resistor_area
-
 if TYPE_CHECKING:
     from collections.abc import Callable
 
@@ -33,7 +31,7 @@ def part_sizes(part: Part) -> Document:
         "series": part.series,
         "parallel": part.parallel,
         "segments": part.series * part.parallel,
-        "area_m2": resistor_area(part, 0.0),
+        "area_m2": part.area_taken(0.0),
     }
 
 

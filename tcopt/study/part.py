@@ -83,6 +83,16 @@ class Part(Model):
             return None
         return self.squares * self.width**2 * self.series * self.parallel
 
+    def area_taken(self, spacing: float) -> float | None:
+        """Return the area with the gaps of this width [m] beside its segments [m^2].
+
+        As drawn; at the narrowest where it is not; None where the data for that are missing.
+        """
+        width = self.width if self.width is not None else self.material.min_width
+        if width is None or self.squares is None:
+            return None
+        return self.squares * width * (width + spacing) * self.series * self.parallel
+
 
 def drawn_value(
     material: Material, width: float, length: float, series: int = 1, parallel: int = 1

@@ -7,8 +7,6 @@ from typing import TYPE_CHECKING
 from rich.console import RenderableType
 from rich.text import Text
 
-from tcopt.mix.influence import resistor_area
-from tcopt.mix.sampled import Compared
 from tcopt.show.tables.parts import PPM, heading, new_table, row
 from tcopt.show.words import limit_words, mix_words, number
 from tcopt.units import format_quantity
@@ -39,6 +37,8 @@ def silicon_section(result: DesignResult) -> list[RenderableType]:
         "", "resistors", "box\nppm/K\ntypical", "box\nppm/K\nmedian",
         f"box\nppm/K\n{_share(silicon)}", "spread\nof value", numbers=(2, 3, 4, 5),
     )  # fmt: skip
+    from tcopt.mix.sampled import Compared  # noqa: PLC0415  slow to import
+
     named = [("best for silicon", Compared(result.winner, best)), ("best on paper", silicon.paper)]
     if silicon.single is not None:
         named.append(("best single", silicon.single))
@@ -153,7 +153,7 @@ def sizes_section(result: DesignResult) -> list[RenderableType]:
                 number(1e6 * part.length),
                 number(part.squares),
                 f"{count}{joined}",
-                square_micrometres(resistor_area(part, 0.0) or 0.0),
+                square_micrometres(part.area_taken(0.0) or 0.0),
             )
     words = "Width, length and squares of one segment; values with their ends."
     if sizes.area is not None:
