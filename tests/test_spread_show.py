@@ -239,6 +239,17 @@ def test_pictures_of_parts_that_are_all_alike() -> None:
         assert plots.encoded(picture(result))
 
 
+def test_a_perfect_trim_leaves_one_value_and_rounding() -> None:
+    """Without steps and errors every part has the same current at the insertion."""
+    film = material(tc1=2e-4, spread=0.05, tc1_spread=1e-4)
+    found = spread(ptat_plus_vbe(film, trim=(insertion(),)))
+    slices = spread_document(found)["stages"][1]["histograms"]["current_A"]
+    assert sum(slices["counts"]) == found.sample.drawn
+    assert all(np.diff(slices["edges"]) > 0)
+    assert slices["edges"][0] == pytest.approx(slices["edges"][-1], rel=1e-8)
+    assert plots.encoded(plots.histogram_picture(found))
+
+
 def test_files(result: SpreadResult, bare: SpreadResult) -> None:
     tables = {"spread.json", "quantiles.csv", "causes.csv", "corners.csv", "fan.csv", "parts.csv"}
     pictures = {

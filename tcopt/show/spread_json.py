@@ -25,6 +25,8 @@ if TYPE_CHECKING:
 __all__ = ["spread_document"]
 
 _SLICES = 60
+_ALIKE = 1e-9
+"""Relative width up to which a figure of all parts is one value and rounding."""
 
 
 def spread_document(result: SpreadResult) -> Document:
@@ -151,9 +153,19 @@ def _histograms(result: SpreadResult, index: int) -> Document:
     found: Document = {}
     for k, name in enumerate(FIGURES):
         shown = FIGURE[name]
-        counts, edges = np.histogram(shown.factor * figures[:, k], _SLICES)
+        values = shown.factor * figures[:, k]
+        counts, edges = np.histogram(values, _SLICES, _ends(values))
         found[shown.key] = {"edges": edges.tolist(), "counts": counts.tolist()}
     return found
+
+
+def _ends(values: Array) -> tuple[float, float]:
+    """Return where slices begin and end; a perfect trim leaves no room for any in between."""
+    if not len(values):
+        return 0.0, 1.0
+    low, high = float(values.min()), float(values.max())
+    least = _ALIKE * max(abs(low), abs(high))
+    return (low, high) if high - low > least else (low - least, high + least)
 
 
 def _fan(stage: Stage) -> Document:

@@ -42,6 +42,8 @@ _BANDS = ((0.0015, 0.9985, "#d6dde4"), (0.025, 0.975, "#a9bac9"), (0.16, 0.84, "
 _SLICES = 70
 _OUTERMOST = 0.9995
 """Quantile up to which a histogram is drawn; what lies further is told."""
+_ALIKE = 1e-9
+"""Relative width up to which a figure of all parts is one value and rounding."""
 _FAR_APART = 8.0
 """Times between the medians of two stages from which on their axis is logarithmic."""
 _MOST_BARS = 128
@@ -217,7 +219,8 @@ def _histogram(axes: Axes, result: SpreadResult, name: str) -> None:
     ends: list[float] = []
     for column, stage, look in zip(columns, result.stages, _LOOKS, strict=False):
         low, high = (scale * float(np.quantile(column, q)) for q in (1 - _OUTERMOST, _OUTERMOST))
-        edges = cut(low, high, _SLICES + 1) if low < high else [0.99 * low, 1.01 * low]
+        wide = high - low > _ALIKE * abs(high)
+        edges = cut(low, high, _SLICES + 1) if wide else [0.99 * low, 1.01 * low]
         counts = np.histogram(scale * column, edges)[0]
         height = counts / max(1, counts.max())
         axes.stairs(height, edges, label=stage.name, **look)
