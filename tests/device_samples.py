@@ -17,7 +17,7 @@ import numpy as np
 from tcopt.circuits import CIRCUITS
 from tcopt.circuits.terms import kinds_of
 
-__all__ = ["DEVICE_CASES", "drawn", "row"]
+__all__ = ["DEVICE_CASES", "TEMPERATURES", "drawn", "row"]
 
 DEVICE_CASES = tuple(
     (circuit.topology, feed, device.value)
@@ -32,16 +32,19 @@ _K_PER_Q = 1.380649e-23 / 1.602176634e-19
 _SMALL = 1e-3
 _LIFTING = ("R_output", "R_core", "R_source", "R_base", "R_gate")
 """Resistors between the output transistor and ground, or larger than those."""
+TEMPERATURES = (218.15, 448.15)
+"""-55 and 175 degC [K]."""
 _CURRENTS = (1e-9, 1e-2)
 _INVERSION = (1e-4, 1e4)
 
 
 class _Draw:
-    """Independent draws, all of one length."""
+    """Independent draws, all of one length; effects are there or not, or always."""
 
-    def __init__(self, count: int, seed: int) -> None:
+    def __init__(self, count: int, seed: int, always: bool) -> None:
         self.rng = np.random.default_rng(seed)
         self.count = count
+        self.always = always
 
     def even(self, low: float, high: float) -> Any:
         return self.rng.uniform(low, high, self.count)
@@ -51,6 +54,9 @@ class _Draw:
 
     def or_not(self, value: Any, share: float = 0.75, otherwise: float = 0.0) -> Any:
         return np.where(self.rng.random(self.count) < share, value, otherwise)
+
+    def effect(self, value: Any) -> Any:
+        return value if self.always else self.or_not(value)
 
 
 def _junction(draw: _Draw, T: Any) -> dict[str, Any]:
@@ -121,10 +127,16 @@ def _resistors(draw: _Draw, topology: str, mos: bool, q: Mapping[str, Any]) -> d
     return found
 
 
-def drawn(topology: str, feed: str, device: str, count: int, seed: int) -> dict[str, Any]:
-    """Return quantities of ``count`` circuits, as `tcopt.solve.numerics` takes them, and more."""
-    draw, mos = _Draw(count, seed), device == "mos"
-    T = draw.even(218.15, 448.15)
+def drawn(
+    topology: str, device: str, count: int, seed: int, *, all_effects: bool = False
+) -> dict[str, Any]:
+    """Return quantities of ``count`` circuits, as `tcopt.solve.numerics` takes them, and more.
+
+    For every kind of input at once. The first two are at the ends of the range of temperature.
+    """
+    draw, mos = _Draw(count, seed, all_effects), device == "mos"
+    T = draw.even(*TEMPERATURES)
+    T[:2] = TEMPERATURES
     N, M = _ratios(draw, topology)
     I_in, I_out = draw.log(*_CURRENTS), draw.log(*_CURRENTS)
     devices = _channel(draw, T, I_in) if mos else _junction(draw, T)
@@ -136,11 +148,11 @@ def drawn(topology: str, feed: str, device: str, count: int, seed: int) -> dict[
     q |= devices
     q |= _resistors(draw, topology, mos, q)
     if device == "bipolar":
-        q["inverse_beta"] = draw.or_not(q["inverse_beta"])
-    q["inverse_V_A"] = draw.or_not(1 / draw.log(2, 300))
+        q["inverse_beta"] = draw.effect(q["inverse_beta"])
+    q["inverse_V_A"] = draw.effect(1 / draw.log(2, 300))
     lift = I_out * sum(q.get(name, 0.0) for name in _LIFTING)
     q["V_out"] = draw.or_not(lift, 0.97) + draw.log(0.05, 30)
-    q["I_L"] = draw.or_not(draw.log(1e-18, 1e-12) * 2 ** ((T - 300) / 10))
+    q["I_L"] = draw.effect(draw.log(1e-18, 1e-12) * 2 ** ((T - 300) / 10))
     q["I_others"] = draw.or_not(draw.log(1e-4, 0.3) * I_in * q.get("inverse_beta", 0.0), 0.5)
     q["I_given"] = I_in
     excess = draw.log(1e-2, 30)
