@@ -79,7 +79,7 @@ def robust_fit(
             break
         more = point.worst(nodes)
         here = float(each.max())
-        deviation = max([here, *(worst.deviation for worst in more)])
+        deviation = max([here, *(worst.deviation for worst in more if not worst.at_most)])
         if best is None or deviation < best.deviation * (1 - 1e-4):
             best = SiliconFit(point.filled(), deviation, deviation, float(each[0]), point.points)
         elif deviation > 3 * best.deviation:

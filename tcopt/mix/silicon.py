@@ -97,7 +97,7 @@ def best_silicon_fit(
         solved, typical, deviation = found
         operation = program.filled(solved)
         more = program.worst(operation)
-        worst = max([deviation, *(each.deviation for each in more)])
+        worst = max([deviation, *(each.deviation for each in more if not each.at_most)])
         if best is None or worst < best.deviation:
             best = SiliconFit(operation, worst, solved.bound, typical, program.points)
         best = replace(best, bound=min(solved.bound, best.deviation), points=program.points)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import combinations
 
 import numpy as np
@@ -29,10 +29,19 @@ def projected(profile: Array, directions: Sequence[Array]) -> Array:
 
 @dataclass(frozen=True)
 class Worst:
-    """A deviation [unit of y], and the two points of spread it is at, shape (2 or 0, causes)."""
+    """Two points of spread that are worth a scenario.
+
+    Attributes
+    ----------
+    deviation : at either of them, to first order [unit of y]
+    points : shape (2 or 0, causes)
+    at_most : the deviation is what is left if a second knob does nothing: it may well mend
+        that, but how much, within its range, only the program tells
+    """
 
     deviation: float
     points: Array
+    at_most: bool = False
 
 
 def worst_points(
@@ -47,9 +56,9 @@ def worst_points(
     ``y(T) = y_0(T) + G(T) z``, ``|z| = sigma``. A knob that moves y by one number
     times ``b(T)`` leaves half the difference of ``y/b`` between two temperatures;
     the largest such difference is at ``z = sigma dG/|dG|``. A second knob is taken
-    out by least squares. With no knob the largest ``|y|`` counts. What the first
-    knob cannot reach is another deviation, at the points where the mean of
-    ``y/b`` is largest.
+    out by least squares, and as if it were not there (`Worst.at_most`). With no knob
+    the largest ``|y|`` counts. What the first knob cannot reach is another deviation,
+    at the points where the mean of ``y/b`` is largest.
 
     Parameters
     ----------
@@ -72,11 +81,17 @@ def worst_points(
         point = sigma * level / np.linalg.norm(level)
         found.append(Worst(size * beyond, np.stack([point, -point])))
     if len(others) > 1:
+        idle = _largest(*_between(off, by_cause), sigma, size)
+        found.append(replace(idle, at_most=True))
         off, by_cause = projected(off, others), projected(by_cause, others)
-    one, two = np.array(list(combinations(range(len(off)), 2))).T
-    plain, apart = (off[one] - off[two]) / 2, (by_cause[:, one] - by_cause[:, two]) / 2
-    found.append(_largest(plain, apart, sigma, size))
+    found.append(_largest(*_between(off, by_cause), sigma, size))
     return sorted(found, key=lambda worst: -worst.deviation)
+
+
+def _between(off: Array, by_cause: Array) -> tuple[Array, Array]:
+    """Return half the differences between all pairs of temperatures."""
+    one, two = np.array(list(combinations(range(len(off)), 2))).T
+    return (off[one] - off[two]) / 2, (by_cause[:, one] - by_cause[:, two]) / 2
 
 
 def is_known(points: Array, new: Array) -> bool:
