@@ -216,11 +216,20 @@ def _histogram(axes: Axes, result: SpreadResult, name: str) -> None:
         and max(medians) > _FAR_APART * min(medians)
     )
     cut = np.geomspace if logarithmic else np.linspace
+    spans = [
+        [scale * float(np.quantile(column, q)) for q in (1 - _OUTERMOST, _OUTERMOST)]
+        for column in columns
+    ]
+    slim = max(high - low for low, high in spans) / (2 * _SLICES)
     ends: list[float] = []
-    for column, stage, look in zip(columns, result.stages, _LOOKS, strict=False):
-        low, high = (scale * float(np.quantile(column, q)) for q in (1 - _OUTERMOST, _OUTERMOST))
-        wide = high - low > _ALIKE * abs(high)
-        edges = cut(low, high, _SLICES + 1) if wide else [0.99 * low, 1.01 * low]
+    for (low, high), column, stage, look in zip(
+        spans, columns, result.stages, _LOOKS, strict=False
+    ):
+        if high - low > _ALIKE * abs(high):
+            edges = cut(low, high, _SLICES + 1)
+        else:
+            half = max(slim, 2 * _ALIKE * abs(low)) or 1.0
+            edges = np.array([low - half, high + half])
         counts = np.histogram(scale * column, edges)[0]
         height = counts / max(1, counts.max())
         axes.stairs(height, edges, label=stage.name, **look)
