@@ -60,6 +60,16 @@ def test_a_readme_holds_its_figures_and_pictures(folder: Path) -> None:
 
 
 def test_there_are_studies() -> None:
-    assert {"cancel_ptat", "follow_temperature", "flat_sum_grade_0", "existing_design"} <= {
-        record.parent.name for record in RECORDS
-    }
+    assert {
+        "cancel_ptat", "follow_temperature", "flat_sum_grade_0", "existing_design",
+        "paper_and_silicon", "one_or_two_trims", "mos_constant_transconductance",
+        "large_and_small_bias",
+    } <= {record.parent.name for record in RECORDS}  # fmt: skip
+
+
+def test_the_mix_for_silicon_drifts_a_fifth_of_the_mix_for_paper() -> None:
+    """What that study is for; its figures are those of a run, see above."""
+    (run,) = (run for _, run in RUNS if run["command"] == ["design", "silicon.toml"])
+    chosen = run["figures"]["designs.0.silicon.box_ppm_per_K"]
+    assert chosen <= run["figures"]["silicon.paper_optimum.silicon.box_ppm_per_K"] / 5
+    assert chosen <= run["figures"]["silicon.best_single_material.silicon.box_ppm_per_K"]
