@@ -10,7 +10,7 @@ whoever can bring them home.
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -18,15 +18,15 @@ import numpy as np
 
 from tcopt.arrays import Array
 
-__all__ = ["REACH", "Block", "Rescue", "Start", "System", "matrix", "settled", "shape_of", "solve",
+__all__ = ["REACH", "Block", "Finish", "Start", "System", "matrix", "settled", "shape_of", "solve",
            "taken", "vector"]  # fmt: skip
 
 Block = Mapping[str, Any]
 """Quantities by name: numbers, or arrays of one length."""
 Start = Callable[[Block], tuple[Any, ...]]
 """Takes a block, returns a first guess of the unknowns."""
-Rescue = Callable[[Block, list[Array]], None]
-"""Takes a block and the unknowns, nan where none were found, and mends them in place."""
+Finish = Callable[[Block, list[Array]], Sequence[Array]]
+"""Takes a block and its unknowns, nan where none were found; returns what is asked for."""
 
 _BLOCK = 4096
 _FIRST_STEPS = 8
@@ -89,15 +89,15 @@ def settled(value: Any, change: Any) -> Any:
     return np.abs(change) <= _CLOSE * (1 + np.minimum(np.abs(value), _MUCH))
 
 
-def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tuple[Array, ...]:
-    """Return the unknowns at which the loops hold, nan where there are none.
+def solve(system: System, arguments: Block, start: Start, finish: Finish) -> tuple[Array, ...]:
+    """Return what ``finish`` makes of the unknowns at which the loops hold.
 
     Parameters
     ----------
     system : the equations
     arguments : quantities by name, broadcastable arrays
     start : first guess of the unknowns from a block of quantities
-    rescue : for points at which the first guess leads nowhere, or to the wrong solution
+    finish : what is left to do with a block
     """
     shape = np.broadcast_shapes(*(value.shape for value in arguments.values()))
     size = math.prod(shape)
@@ -105,14 +105,15 @@ def solve(system: System, arguments: Block, start: Start, rescue: Rescue) -> tup
         name: value if value.ndim == 0 else _spread(value, shape).reshape(-1)
         for name, value in arguments.items()
     }
-    answers = [np.empty(size) for _ in system.unknowns]
     if size <= _BLOCK:
-        found = _solve_block(system, flat, start, rescue, size)
-        return tuple(value.reshape(shape) for value in found)
+        found = _solve_block(system, flat, start, finish, size)
+        return tuple(_spread(value, (size,)).reshape(shape) for value in found)
+    answers: list[Array] = []
     for first in range(0, size, _BLOCK):
         last = min(first + _BLOCK, size)
         block = {n: v if v.ndim == 0 else v[first:last] for n, v in flat.items()}
-        found = _solve_block(system, block, start, rescue, last - first)
+        found = _solve_block(system, block, start, finish, last - first)
+        answers = answers or [np.empty(size) for _ in found]
         for answer, value in zip(answers, found, strict=True):
             answer[first:last] = value
     return tuple(answer.reshape(shape) for answer in answers)
@@ -124,10 +125,10 @@ def _spread(value: Any, shape: tuple[int, ...]) -> Any:
 
 
 def _solve_block(
-    system: System, block: Block, start: Start, rescue: Rescue, count: int
-) -> list[Array]:
-    values = [np.array(_spread(guess, (count,)), dtype=float) for guess in start(block)]
+    system: System, block: Block, start: Start, finish: Finish, count: int
+) -> Sequence[Array]:
     with np.errstate(all="ignore"):
+        values = [np.array(_spread(guess, (count,)), dtype=float) for guess in start(block)]
         on_the_way = _iterate(system, block, values, _FIRST_STEPS)
         if on_the_way.any():
             where = np.flatnonzero(on_the_way)
@@ -135,23 +136,33 @@ def _solve_block(
             lost = _iterate(system, taken(block, where), some, _STEPS)
             for value, own in zip(values, some, strict=True):
                 value[where] = np.where(lost, np.nan, own)
-        rescue(block, values)
-    return values
+        return finish(block, values)
 
 
 def _iterate(system: System, block: Block, values: list[Array], steps: int) -> Array:
     """Take steps in place; return which points are still on their way."""
     logs = system.logs
-    there: Any = False
+    changes: list[Any] = []
     for _ in range(steps):
-        there = True
-        for k, change in enumerate(system.step(*values, **block)):
-            if logs[k]:
-                # minimum and maximum keep nan, which marks a point that has left the domain
-                change = np.minimum(np.maximum(change, -REACH), REACH)  # noqa: PLW2901
-            values[k] += change
-            there = there & settled(values[k], change)
-        lost = np.isnan(values[0])
-        if np.all(there | lost):
+        changes = list(system.step(*values, **block))
+        largest = [np.abs(change).max() for change in changes]
+        for k, is_log in enumerate(logs):
+            # minimum and maximum keep nan, which marks a point that has left the domain
+            if is_log and not largest[k] <= REACH:
+                changes[k] = np.minimum(np.maximum(changes[k], -REACH), REACH)
+            values[k] += changes[k]
+        most = np.max(largest)
+        if most <= _CLOSE:
+            return np.zeros(values[0].shape, dtype=bool)
+        # a point by point look only where it may end the matter
+        if not most > _CLOSE * _MUCH and not _on_the_way(values, changes).any():
             break
-    return np.asarray(~(there | lost))
+    return _on_the_way(values, changes)
+
+
+def _on_the_way(values: list[Array], changes: list[Any]) -> Array:
+    """Say which points are neither there nor lost."""
+    lost, there = np.isnan(values[0]), np.asarray(True)
+    for value, change in zip(values, changes, strict=True):
+        there = there & settled(value, change)
+    return np.asarray(~(lost | there))

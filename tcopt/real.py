@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from functools import partial
 from typing import Any
 
@@ -15,7 +15,10 @@ from tcopt.numerics import Numerics, Real
 from tcopt.starts import from_above, from_currents, looked_round, some_voltage
 from tcopt.symbols import resistance_name
 
-__all__ = ["at_any_voltage", "needed", "real_of", "solution", "voltages_fit"]
+__all__ = ["at_any_voltage", "log_currents", "needed", "real_of", "solution", "voltages_fit"]
+
+_Rescue = Callable[[newton.Block, list[Array]], Any]
+"""Takes a block and its unknowns, nan where none were found, and mends them in place."""
 
 _DIODE, _EARLY = "V_D", "inverse_V_A"
 _LEAST_OF_FOLLOWED = {"inverse_beta": 1.0}
@@ -40,16 +43,36 @@ def solution(circuit: Numerics, arguments: Mapping[str, Any]) -> tuple[Array, ..
     A diode-connected transistor without voltage across it is off, and an output
     below its emitter is no output, whatever the laws say there: no solution.
     """
-    found = at_any_voltage(circuit, arguments)
-    on = voltages_fit(circuit, arguments, found)
-    return tuple(np.where(on, value, np.nan) for value in found)
+    return _solved(circuit, arguments, lambda block, found: found)  # noqa: ARG005
+
+
+def log_currents(circuit: Numerics, arguments: Mapping[str, Any]) -> tuple[Array, ...]:
+    """Return the logarithms of the currents [ln A]; nan where there is no solution."""
+    outputs = real_of(circuit).outputs
+    return _solved(circuit, arguments, lambda block, found: outputs(*found, **block)[0])
 
 
 def at_any_voltage(circuit: Numerics, arguments: Mapping[str, Any]) -> tuple[Array, ...]:
     """Return the unknowns at which the loops hold, be the transistors on or off."""
+    return _solved(circuit, arguments, lambda block, found: found, on=False)  # noqa: ARG005
+
+
+def _solved(
+    circuit: Numerics, arguments: Mapping[str, Any], finish: newton.Finish, *, on: bool = True
+) -> tuple[Array, ...]:
+    """Return what ``finish`` makes of the unknowns, those with transistors off left out or not."""
     system = newton.System(real_of(circuit).step, circuit.unknowns)
     start = _start(circuit)
-    return newton.solve(system, arguments, start, _rescue(circuit, system, start))
+    rescue = _rescue(circuit, system, start)
+
+    def rescued(block: newton.Block, found: list[Array]) -> Sequence[Array]:
+        fit = rescue(block, found)
+        if on and not np.all(fit):
+            for value in found:
+                value[~fit] = np.nan
+        return finish(block, found)
+
+    return newton.solve(system, arguments, start, rescued)
 
 
 def voltages_fit(circuit: Numerics, arguments: Mapping[str, Any], found: Sequence[Array]) -> Any:
@@ -71,10 +94,6 @@ def _last(circuit: Numerics) -> str:
     return circuit.unknowns[len(circuit.currents) - 1]
 
 
-def _diode_voltage(circuit: Numerics) -> float:
-    return 1.3 if circuit.followed else 0.65
-
-
 def _ideal_currents(circuit: Numerics, block: newton.Block) -> dict[str, Any]:
     ideal = circuit.ideal
     if ideal is None or ideal.closed_form is None:
@@ -87,29 +106,34 @@ def _start(circuit: Numerics) -> newton.Start:
     if circuit.ideal is None:
         return looked_round(real_of(circuit).loops, circuit.unknowns)
     return from_currents(
-        circuit.unknowns, lambda block: _ideal_currents(circuit, block), _diode_voltage(circuit)
+        circuit.unknowns,
+        lambda block: _ideal_currents(circuit, block),
+        followed=circuit.followed,
     )
 
 
-def _rescue(circuit: Numerics, system: newton.System, start: newton.Start) -> newton.Rescue:
-    """Return what is tried where the first guess leads nowhere."""
+def _rescue(circuit: Numerics, system: newton.System, start: newton.Start) -> _Rescue:
+    """Return what is tried where the first guess leads nowhere; it says where voltages fit."""
     least = _LEAST_OF_FOLLOWED if circuit.followed else {}
     fine = looked_round(real_of(circuit).loops, circuit.unknowns, *_FINE)
 
-    def rescue(block: newton.Block, found: list[Array]) -> None:
+    def rescue(block: newton.Block, found: list[Array]) -> Any:
         lost = np.flatnonzero(np.isnan(found[0]))
         if lost.size:
             brought = brought_in(system, newton.taken(block, lost), start, lost.size, least)
             for value, own in zip(found, brought, strict=True):
                 value[lost] = own
         # leakage alone may make a current, and of two solutions the wrong one may be met
-        wrong = np.flatnonzero(~voltages_fit(circuit, block, found))
-        if wrong.size:
-            some = newton.taken(block, wrong)
-            again = careful(system, some, fine(some), wrong.size)
-            there = np.isfinite(again[0])
-            for value, own in zip(found, again, strict=True):
-                value[wrong[there]] = own[there]
+        fit = voltages_fit(circuit, block, found)
+        if np.all(fit):
+            return fit
+        wrong = np.flatnonzero(~fit)
+        some = newton.taken(block, wrong)
+        again = careful(system, some, fine(some), wrong.size)
+        there = np.isfinite(again[0])
+        for value, own in zip(found, again, strict=True):
+            value[wrong[there]] = own[there]
+        return voltages_fit(circuit, block, found)
 
     return rescue
 
@@ -143,7 +167,12 @@ def needed(circuit: Numerics, slot: str, output: Array, arguments: Mapping[str, 
     look = _pinned_look(circuit, slot, unknowns, apart)
     start = look if circuit.ideal is None else _pinned_ideal(circuit, slot, unknowns)
     rescue = _pinned_rescue(system, unknowns, last, look)
-    found = newton.solve(system, everything, start, rescue)
+
+    def rescued(block: newton.Block, values: list[Array]) -> Sequence[Array]:
+        rescue(block, values)
+        return values
+
+    found = newton.solve(system, everything, start, rescued)
     return np.asarray(found[-1] / _fed(output, arguments))
 
 
@@ -161,7 +190,9 @@ def _pinned_ideal(circuit: Numerics, slot: str, unknowns: tuple[str, ...]) -> ne
     if ideal is None:
         raise AssertionError(f"no ideal transistors in {circuit}")
     currents = from_currents(
-        unknowns[:-1], lambda block: _ideal_currents(circuit, block), _diode_voltage(circuit)
+        unknowns[:-1],
+        lambda block: _ideal_currents(circuit, block),
+        followed=circuit.followed,
     )
 
     def guess(block: newton.Block) -> tuple[Any, ...]:
@@ -216,7 +247,7 @@ def _near_the_output(unknowns: tuple[str, ...], block: newton.Block, ratio: floa
 
 def _pinned_rescue(
     system: newton.System, unknowns: tuple[str, ...], last: str, look: newton.Start
-) -> newton.Rescue:
+) -> _Rescue:
     """Return what is tried where the first guess leads to no resistance."""
 
     guesses: list[newton.Start] = [look]

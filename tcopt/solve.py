@@ -20,7 +20,7 @@ from numpy.typing import ArrayLike
 from tcopt import newton
 from tcopt.arrays import Array
 from tcopt.numerics import IDEAL, Numerics, arguments_of, numerics
-from tcopt.real import needed, real_of, solution
+from tcopt.real import log_currents, needed, real_of, solution
 from tcopt.symbols import resistance_name
 
 __all__ = [
@@ -43,7 +43,7 @@ def currents(circuit: Numerics, quantities: Quantities) -> dict[str, Array]:
     quantities : those of ``circuit.quantities``
     """
     if circuit.closed_form is None:
-        found = _outputs(circuit, quantities, unknowns(circuit, quantities))[0]
+        found = log_currents(circuit, arguments_of(circuit.quantities, quantities))
         with np.errstate(over="ignore"):
             return {
                 name: np.asarray(np.exp(log))

@@ -23,7 +23,8 @@ _LEAST_VOLTAGE, _JUNCTION = 0.1, 0.65
 def from_currents(
     unknowns: tuple[str, ...],
     currents: Callable[[Block], Mapping[str, Any]],
-    diode_voltage: float,
+    *,
+    followed: bool,
 ) -> Start:
     """Return a guess from currents that are about right, such as those of ideal transistors.
 
@@ -31,20 +32,33 @@ def from_currents(
     ----------
     unknowns : their names
     currents : the currents [A] of a block, by name
-    diode_voltage : of the diode-connected transistor [V]
+    followed : whether a follower supplies the base currents
     """
 
     def guess(block: Block) -> tuple[Any, ...]:
         with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
-            found = currents(block)
+            found = {name: np.log(current) for name, current in currents(block).items()}
             return tuple(
-                np.log(found[name.removeprefix("log_").replace("J_", "I_")])
+                found[name.removeprefix("log_").replace("J_", "I_")]
                 if name.startswith("log_")
-                else diode_voltage
+                else _junction(found, block, followed=followed)
                 for name in unknowns
             )
 
     return guess
+
+
+def _junction(logs: Mapping[str, Any], block: Block, *, followed: bool) -> Any:
+    """Return about the voltage across the input transistor [V], one or two junctions."""
+    current = (
+        logs["I_in"] if "I_in" in logs else next(iter(logs.values())) + np.log(block.get("M", 1.0))
+    )
+    voltage = block["V_T"] * (current - block["log_I_S"])
+    if followed:
+        voltage = voltage + block["V_T"] * (
+            current + np.log(block["inverse_beta"]) - block["log_I_S"]
+        )
+    return np.fmax(voltage, _LEAST_VOLTAGE)
 
 
 def looked_round(
