@@ -14,6 +14,7 @@ from tcopt.circuits.terms import Device, kinds_of
 from tcopt.derive import Derivation, Numbers, derive, expected_names, with_numbers
 from tcopt.errors import InputError
 from tcopt.operation import Choices, Operation, fixed_mixes
+from tcopt.solve import unknowns
 from tcopt.symbols import INVERSE, resistance_name
 from tcopt.targets import target_current
 
@@ -121,10 +122,26 @@ def values_of(study: Study) -> dict[str, float]:
     if made.transistor is not None and made.transistor.kind == "bipolar":
         found |= {"V_G0": made.transistor.bandgap_voltage}
         found |= {"eta": made.transistor.temperature_exponent}
+    if study.is_finished and operation.circuit.closed_form is None:
+        found |= _solution(operation, reference)
     target = target_current(study.target, reference)
     low, high = max(study.range.low, reference - _REACH), min(study.range.high, reference + _REACH)
     value, tc1, tc2 = _expansion(target.current, reference, low, high)
     return found | {"I_target": value, "TC1_target": tc1, "TC2_target": tc2}
+
+
+def _solution(operation: Operation, reference: float) -> dict[str, float]:
+    """Return what loops without a closed form are solved for, at the reference, by name, in SI."""
+    quantities = operation.quantities(operation.die_temperature(reference))
+    found = {name: float(current) for name, current in operation.currents(reference).items()}
+    for name, value in zip(
+        operation.circuit.unknowns, unknowns(operation.circuit, quantities), strict=True
+    ):
+        if name.startswith("log_"):
+            found[name.removeprefix("log_")] = float(np.exp(value))
+        else:
+            found[name] = float(value)
+    return found
 
 
 def _expansion(

@@ -3,15 +3,20 @@
 from __future__ import annotations
 
 import re
+from pathlib import Path
 
+import numpy as np
 import pytest
 
+from tcopt.check import check
 from tcopt.derive import render
 from tcopt.errors import InputError
 from tcopt.explain import explain, values_of
 from tcopt.finish import finished_study
 from tcopt.study import Study, Target, load_study
 from tests.small import FIRST, T_REF, first_design, material, mirror_study, process
+
+STUDIES = Path(__file__).parent.parent / "studies"
 
 
 def _finished() -> Study:
@@ -112,3 +117,25 @@ def test_words_that_are_none_are_refused(words: tuple[str, ...], message: str) -
 def test_words_that_contradict_the_study_are_refused(words: tuple[str, ...], message: str) -> None:
     with pytest.raises(InputError, match=message):
         explain(*words, study=load_study(FIRST / "study.toml"))
+
+
+def test_loops_without_a_closed_form_take_their_numbers_from_the_solution() -> None:
+    finished = load_study(STUDIES / "mos_constant_transconductance" / "drawn.toml")
+    found = values_of(finished)
+    current = check(finished).assessment.operation.output(np.array([300.15]))[0]
+    assert found["I_out"] == found["J_out"] == pytest.approx(current, rel=1e-9)
+    # I R is the difference of the two gate voltages, each by the law in strong inversion's
+    # and weak inversion's common form: V_GS - V_TH = 2 n V_T ln(exp(sqrt(I/I_spec)) - 1)
+    n, V_T, I, I_spec = (found[name] for name in ("n", "V_T", "I_out", "I_spec"))
+    up, down = (2 * n * V_T * np.log(np.expm1(np.sqrt(I / k / I_spec))) for k in (1, 4))
+    assert found["n_S"] * I * found["R_core"] == pytest.approx(up - down, rel=1e-9)
+    text = render(explain("constant transconductance bias", study=finished), "text")
+    assert f"{1e6 * current:.3f} uA" in text
+
+
+def test_a_slot_without_explicit_need_may_be_open() -> None:
+    open_study = load_study(STUDIES / "mos_constant_transconductance" / "study.toml")
+    assert not {"J_out", "R_core"} & set(values_of(open_study))
+    text = render(explain("constant transconductance bias", study=open_study), "text")
+    assert "no closed form for the resistance" in text
+    assert "I_target          17.484 uA" in text

@@ -239,7 +239,8 @@ def _pinned_states(
         state = dict(others)
         needed = derivation.needed[slot]
         if needed is None:
-            state |= {positive(n): own[positive(n)] for n in derivation.solved_for}
+            solved = (positive(n) for n in derivation.solved_for)
+            state |= {symbol: own[symbol] for symbol in solved if symbol in own}
         elif current is not None:
             state[output] = current
             state.pop(R, None)
