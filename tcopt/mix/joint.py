@@ -81,10 +81,11 @@ def search_two_slots(
         if progress is not None:
             progress(number, steps)
         starts += _screen(operation, number, names, slots, target)
-    starts.sort(key=lambda start: start.score)
+    chosen_starts = _promising(starts, max(_REFINED, 3 * keep))
     best = Best(keep)
-    best.skipped = max(0, len(starts) - max(_REFINED, 3 * keep))
-    for done, start in enumerate(starts[: max(_REFINED, 3 * keep)]):
+    best.skipped = len(starts) - len(chosen_starts)
+    steps = len(groups) + len(chosen_starts) + 3
+    for done, start in enumerate(chosen_starts):
         if progress is not None:
             progress(len(groups) + done, steps)
         operation, span = groups[start.group]
@@ -95,6 +96,25 @@ def search_two_slots(
     if progress is not None:
         progress(steps, steps)
     return best, whole
+
+
+def _promising(starts: Sequence[_Start], count: int) -> list[_Start]:
+    """Return the best starts of each limit on the pieces.
+
+    So whatever a search with fewer pieces refines, one with more refines too, and
+    allowing more pieces never gives a worse design.
+    """
+    sizes = {(len(s.outer.materials), len(s.inner.materials)) for s in starts}
+    found: dict[int, _Start] = {}
+    for outer, inner in sizes:
+        within = [
+            s
+            for s in starts
+            if len(s.outer.materials) <= outer and len(s.inner.materials) <= inner
+        ]
+        for start in sorted(within, key=lambda s: s.score)[:count]:
+            found[id(start)] = start
+    return sorted(found.values(), key=lambda s: s.score)
 
 
 def _whole_menu(
