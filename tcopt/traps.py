@@ -11,7 +11,6 @@ from tcopt.assess import Assessment
 from tcopt.circuits import GIVEN, SUPPLY
 from tcopt.device_traps import DEVICE_TRAPS
 from tcopt.drift import extreme_points
-from tcopt.laws.numbers import thermal_voltage
 from tcopt.operation import celsius
 
 if TYPE_CHECKING:
@@ -43,7 +42,7 @@ def _one_temperature(found: Assessment) -> Iterator[str]:
         yield (
             f"the slope is matched at the reference only: there {left.slope_ppm_per_K:.1f} ppm/K "
             f"are left, but {left.box_ppm_per_K:.1f} ppm/K (box) over the {span:.0f} K of the "
-            "range: the second order (TC2) rules"
+            "range: what bends (TC2, a junction's curvature) rules"
         )
 
 
@@ -101,24 +100,32 @@ def _input_in_logarithm(found: Assessment) -> Iterator[str]:
     middle = float(operation.currents(np.array([study.range.reference]))["I_in"][0])
     box = 1e6 * float(current.max() - current.min()) / (middle * (high - low))
     if box > 100:
+        share = _follows_input(found)
         yield (
-            f"the input current drifts by {box:.0f} ppm/K (box) itself; the output sees it "
-            "through the circuit's logarithm, weakened but not removed"
+            f"the input current drifts by {box:.0f} ppm/K (box) itself; at the reference 1 % of "
+            f"it moves the output by {share:+.2f} %"
         )
+
+
+def _follows_input(found: Assessment) -> float:
+    """Return ``d ln I_out/d ln I_in`` at the reference [1], whatever drives the input."""
+    operation = found.operation
+    at = np.array([operation.study.range.reference])
+    driver = "I_given" if operation.study.circuit.feed == GIVEN else "V_CC"
+    output, fed = (operation.sensitivities(at, of)[driver] for of in ("I_out", "I_in"))
+    return float((output / fed)[0])
 
 
 def _flank(found: Assessment) -> Iterator[str]:
     operation = found.operation
     if operation.study.circuit.topology != "peaking source":
         return
-    at = np.array([operation.study.range.reference])
-    drop = operation.mixes["drop"].resistance(at) * operation.currents(at)["I_in"]
-    slope = float(1 - (drop / thermal_voltage(at))[0])
+    slope = _follows_input(found)
     if abs(slope) > _PEAK:
         side = "below" if slope > 0 else "beyond"
         yield (
             f"the output sits on the flank {side} its peak: 1 % more input current moves it by "
-            f"{slope:+.2f} %; at the peak the drop across the resistor is one thermal voltage"
+            f"{slope:+.2f} %; at the peak it does not move"
         )
 
 

@@ -25,6 +25,8 @@ from tcopt.mix.silicon import best_silicon_fit
 from tcopt.mix.worst import worst_points
 from tcopt.operation import Mix
 from tcopt.solve import currents
+from tcopt.spread.figures import FIGURES
+from tcopt.spread.run import spread_of
 from tcopt.study import CommonPart, Insertion, Material, OpenSlot, Part, Study, Trim
 from tcopt.symbols import resistance_name
 from tests.silicon_studies import MENU, T_0, mirror_study, study_of, sum_study
@@ -74,6 +76,12 @@ def test_what_the_knob_cannot_reach_is_a_deviation_of_its_own() -> None:
     assert beyond.deviation == pytest.approx(3 * 0.05 - 0.1)
     assert np.abs(beyond.points[0]) == pytest.approx([3.0, 0.0])
     assert shape.deviation == pytest.approx(0.02 + 3 * 0.001)
+
+
+def test_what_no_knob_reaches_and_no_cause_moves_has_no_worst_points() -> None:
+    beyond, _ = worst_points(np.array([0.3, 0.3]), np.zeros((1, 2)), [np.ones(2)], 3.0, (-0.1, 0.1))
+    assert beyond.deviation == pytest.approx(0.2)
+    assert beyond.points.shape == (0, 1)
 
 
 def test_two_materials_spread_by_the_rule_for_mixes() -> None:
@@ -139,6 +147,25 @@ def test_a_trim_that_is_too_short_leaves_what_it_cannot_reach() -> None:
     ratio = 1.035 / 0.935
     assert fit is not None
     assert fit.deviation == pytest.approx((ratio - 1) / (ratio + 1), rel=1e-3)
+    assert fit.bound == pytest.approx(fit.deviation, rel=5e-3)
+
+
+@pytest.mark.parametrize("material", [None, "b"])
+def test_a_film_is_the_same_halved_in_parallel_and_trimmed(material: str | None) -> None:
+    # two films of one step are one film, however they are joined; by hand as above for the whole
+    # trimmed. Of one half trimmed by s, in series (1 + s)/2 is left, in parallel 2/(1 + 1/s): for
+    # equal films a half each is one of the choices of the program, not its best
+    step = (CommonPart(part="step", share=1.0),)
+    a, b = (film(name, spread=0.05, common=step) for name in "ab")
+    offer = Offer((a, b), "parallel")
+    room, band = room_and_band(
+        sensed(a, b), Knobs((Knob("sense", material, 0.9, 1.1),), from_trim=True)
+    )
+    fit = best_silicon_fit(band, offer, room)
+    ratio = 1.035 / 0.935
+    assert fit is not None
+    # with all of it in the film that is trimmed, the part is the whole
+    assert fit.deviation == pytest.approx((ratio - 1) / (ratio + 1), rel=2e-3)
     assert fit.bound == pytest.approx(fit.deviation, rel=5e-3)
 
 
@@ -272,6 +299,33 @@ def test_the_bound_holds_for_what_is_drawn_at_random() -> None:
     reached = silicon.figures[0].box_ppm_per_K * SPAN / 2
     assert reached == pytest.approx(1e6 * silicon.bound.deviation, rel=0.1)
     assert silicon.figures[0].beyond_trim == 0
+
+
+def test_the_figures_are_those_of_the_studys_yield_and_of_its_parts() -> None:
+    study = mirror_study(2, purpose="silicon", limit="150 ppm/K", samples=1024)
+    spread = study.spread.model_copy(update={"wanted_yield": 0.9})
+    result = design(study.model_copy(update={"spread": spread}))
+    silicon = result.silicon
+    assert silicon is not None
+    assert silicon.quantile == 0.9
+    drawn = spread_of(result.winner.operation)
+    boxes = drawn.sample.figures[-1, :, FIGURES.index("residual_box")] * 1e6
+    # a tenth of the same parts lie above
+    assert (boxes > silicon.figures[0].box_ppm_per_K).sum() == pytest.approx(102, abs=1)
+
+
+def test_nothing_is_proven_where_the_output_warms_the_die() -> None:
+    menu = {name: MENU[name] for name in ("silicide", "n_well")}
+    trim = Trim(first=Insertion(temperature=T_0, scales="output", reach=0.5))
+    study = mirror_study(2, materials=menu, purpose="silicon", trim=trim, samples=256)
+    warm = study.range.model_copy(update={"thermal_resistance": 200.0})
+    biased = study.circuit.model_copy(update={"supply": 5.0})
+    cold = design(study).silicon
+    hot = design(study.model_copy(update={"range": warm, "circuit": biased})).silicon
+    assert cold is not None
+    assert hot is not None
+    assert cold.bound.proven
+    assert not hot.bound.proven
 
 
 def test_a_trim_of_another_slot_is_searched_by_steps() -> None:

@@ -30,10 +30,10 @@ def _loops(terms: Terms, feed: str) -> tuple[Loop, ...]:
 
 CIRCUIT = Circuit(
     topology="peaking source",
-    summary="an output with a maximum where the drop across the resistor is one thermal voltage",
+    summary="an output with a maximum: more input current also takes more drive away",
     unknowns=("I_in", "I_out"),
     slots=(
-        Slot("feed", "from the supply to the input", feeds=(SUPPLY,)),
+        Slot("feed", "from the supply to the input", feeds=(SUPPLY,), one_way=False),
         Slot("drop", "between the base of the input transistor and its collector"),
     ),
     loops=_loops,

@@ -32,13 +32,15 @@ class Slot:
     """A place for a resistor: a part, or a mix of parts.
 
     ``optional``: without it the slot is a short. ``feeds``: the inputs with
-    which the slot exists; empty means all.
+    which the slot exists; empty means all. ``one_way``: the output follows its resistance
+    one way only, so that one resistance belongs to one current.
     """
 
     name: str
     meaning: str
     optional: bool = False
     feeds: tuple[str, ...] = ()
+    one_way: bool = True
 
     def exists(self, feed: str) -> bool:
         """Say whether the slot exists with this kind of input."""

@@ -19,6 +19,7 @@ from tcopt.mix.program import Fit
 from tcopt.mix.question import Question
 from tcopt.mix.sampled import SiliconResult
 from tcopt.mix.single import Best
+from tcopt.mix.two_sided import is_two_sided, need_near
 from tcopt.operation import Mix, Operation
 from tcopt.study import Span
 
@@ -186,6 +187,8 @@ def needed_point(found: Assessment, slot: str) -> NeededPoint:
         return open_again.pinned_die_temperature(slot, found.target.current(T), T)
 
     def need(T: Array) -> Array:
+        if is_two_sided(operation.study, slot):
+            return need_near(operation, slot, found.target.current(T), die(T))
         return open_again.needed(slot, found.target.current(T), die(T))
 
     at = reference

@@ -12,6 +12,7 @@ from tcopt.mix.joint import search_two_slots
 from tcopt.mix.program import FLOOR, Fit
 from tcopt.mix.question import Question, Spanned, open_slots
 from tcopt.mix.single import Best, Group, search_one_slot
+from tcopt.mix.two_sided import is_two_sided, search_two_sided
 from tcopt.study import Study
 from tcopt.targets import target_current
 
@@ -47,6 +48,9 @@ def search_groups(
     keep = study.search.show
     if len(slots) == 1:
         ((name, slot),) = slots.items()
+        if is_two_sided(study, name):
+            best, reached = search_two_sided(groups, name, slot, target, keep, progress)
+            return best, Bound(reached, proven=False)
         bands = [Group(Band(operation, name, target), span) for operation, span in groups]
         best, proven, reached = search_one_slot(bands, slot, keep, progress)
         # the die's own heat is taken as the target's, though what is proven is of the band
