@@ -91,6 +91,31 @@ def test_out_of_range_is_counted_and_clipped() -> None:
     np.testing.assert_allclose(setting.scale[:, 0], np.clip(wanted, 0.94, 1.06), rtol=1e-9)
 
 
+def test_a_part_without_a_current_at_its_tester_is_beyond() -> None:
+    """No scale gives it one, by hand: (1 + 98.15 (-5e-3 - 3 * 2e-3)) < 0 whatever stands before."""
+    film = _film(tc1=-5e-3, spread=None, tc1_spread=2e-3)
+    trim = (insertion(temperature=398.15),)
+    plan = plan_of(sensed((film, 1e4), trim=trim))
+    z = np.array([[0.0], [-3.0]])
+    setting = trimmed(plan.variation, z, plan.insertions, plan.aims)
+    np.testing.assert_array_equal(setting.beyond, [[False], [True]])
+
+
+@pytest.mark.parametrize("rounds", [1, 6])
+def test_a_part_whose_search_ran_out_is_beyond(rounds: int, monkeypatch: Any) -> None:
+    """One round of Newton in logarithms is exact for a plain product, and not for a sum."""
+    monkeypatch.setattr("tcopt.spread.trim._ROUNDS", rounds)
+    trim = (insertion(scales="core", reach=0.9),)
+    plan = plan_of(ptat_plus_vbe(_film(), trim=trim))
+    z = normals(points("sobol", 4, len(plan.variation.variates), 64, 0))
+    setting = trimmed(plan.variation, z, plan.insertions, plan.aims)
+    found = output_of(plan.variation, z, np.array([T_0]), plan.insertions, setting.scale)
+    off = np.abs(found[:, 0] / plan.aims[0] - 1) > 1e-8
+    assert off.any() == (rounds == 1)
+    assert not (off & ~setting.beyond[:, 0]).any()
+    assert setting.beyond.any() == (rounds == 1)
+
+
 def test_the_tester_s_errors_are_the_parts() -> None:
     """A reading 1 % high makes a part 1 % low; 2 K too hot on a PTAT current 2/T_0 low: by hand."""
     errors = {"measurement_error": 0.01, "temperature_error": 2.0}

@@ -39,6 +39,8 @@ _BEYOND = 0.3
 """How far outside its range a scale is sought, in its logarithm; it is out there anyway."""
 _ALIKE = 1e-2
 """Smallest effect that counts: of a scale on the current, or of the second beside the first's."""
+_MET = 1e-9
+"""Largest miss, of a logarithm of the current, with which a scale counts as found."""
 
 
 @dataclass(frozen=True)
@@ -48,7 +50,8 @@ class Setting:
     Attributes
     ----------
     scale : of each insertion, as set [1], shape (parts, insertions)
-    beyond : whether the scale that was sought lies outside the range, of that shape
+    beyond : whether the scale that was sought lies outside the range or was not found,
+        of that shape
     """
 
     scale: Array
@@ -135,8 +138,11 @@ class _Bench:
         with np.errstate(divide="ignore", invalid="ignore"):
             return np.asarray(np.log(found * self.gain / self.aims))
 
-    def sought(self, logs: Array, free: Sequence[int]) -> Array:
-        """Return the logarithms of the scales at which the free insertions meet their aims."""
+    def sought(self, logs: Array, free: Sequence[int]) -> tuple[Array, Flags]:
+        """Return the logarithms of the scales at which the free insertions meet their aims.
+
+        And whether each of the free ones misses its aim even so, shape (parts, free).
+        """
         low, high = (
             np.log([1 + side * each.reach for each in self.insertions]) for side in (-1, 1)
         )
@@ -154,7 +160,9 @@ class _Bench:
             logs = np.clip(logs, low - _BEYOND, high + _BEYOND)
             if np.abs(logs - before).max() < _CLOSE:
                 break
-        return logs
+        else:
+            miss = self.misses(logs)[:, columns]
+        return logs, ~(np.abs(miss) <= _MET)  # of nan, where there is no current, too
 
 
 def _solved(slopes: Array, miss: Array) -> Array:
@@ -204,13 +212,13 @@ def trimmed(
     bench = _Bench(variation, z, insertions, aims, temperature, np.hstack(gain))
     logs = np.zeros((len(z), len(insertions)))
     every = range(len(insertions))
-    logs = bench.sought(logs, every)
+    logs, missed = bench.sought(logs, every)
     made = untouched(len(z), len(insertions))
     for index in reversed(every):
         if index != every[-1]:
-            logs = bench.sought(logs, range(index + 1))
+            logs, missed = bench.sought(logs, range(index + 1))
         scale, beyond = _cut(insertions[index], np.exp(logs[:, index]))
-        made.scale[:, index], made.beyond[:, index] = scale, beyond
+        made.scale[:, index], made.beyond[:, index] = scale, beyond | missed[:, index]
         logs[:, index] = np.log(scale)
     return made
 
