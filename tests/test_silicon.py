@@ -152,9 +152,8 @@ def test_a_trim_that_is_too_short_leaves_what_it_cannot_reach() -> None:
 
 @pytest.mark.parametrize("material", [None, "b"])
 def test_a_film_is_the_same_halved_in_parallel_and_trimmed(material: str | None) -> None:
-    # two films of one step are one film, however they are joined; by hand as above for the whole
-    # trimmed. Of one half trimmed by s, in series (1 + s)/2 is left, in parallel 2/(1 + 1/s): for
-    # equal films a half each is one of the choices of the program, not its best
+    # two films of one step are one film, however they are joined: by hand as for one alone. With
+    # one of the two trimmed, the best is to take that one for the whole
     step = (CommonPart(part="step", share=1.0),)
     a, b = (film(name, spread=0.05, common=step) for name in "ab")
     offer = Offer((a, b), "parallel")
@@ -164,7 +163,6 @@ def test_a_film_is_the_same_halved_in_parallel_and_trimmed(material: str | None)
     fit = best_silicon_fit(band, offer, room)
     ratio = 1.035 / 0.935
     assert fit is not None
-    # with all of it in the film that is trimmed, the part is the whole
     assert fit.deviation == pytest.approx((ratio - 1) / (ratio + 1), rel=2e-3)
     assert fit.bound == pytest.approx(fit.deviation, rel=5e-3)
 
@@ -316,12 +314,14 @@ def test_the_figures_are_those_of_the_studys_yield_and_of_its_parts() -> None:
 
 def test_nothing_is_proven_where_the_output_warms_the_die() -> None:
     menu = {name: MENU[name] for name in ("silicide", "n_well")}
-    trim = Trim(first=Insertion(temperature=T_0, scales="output", reach=0.5))
-    study = mirror_study(2, materials=menu, purpose="silicon", trim=trim, samples=256)
+    trim = Trim(first=Insertion(temperature=T_0, scales="core", reach=0.5))
+    circuit = {"topology": "ptat core", "area_ratio": (8.0,), "supply": 3.0}
+    study = study_of(
+        circuit, {"core": OpenSlot(pieces=2)}, menu, purpose="silicon", trim=trim, samples=256
+    )
     warm = study.range.model_copy(update={"thermal_resistance": 200.0})
-    biased = study.circuit.model_copy(update={"supply": 5.0})
     cold = design(study).silicon
-    hot = design(study.model_copy(update={"range": warm, "circuit": biased})).silicon
+    hot = design(study.model_copy(update={"range": warm})).silicon
     assert cold is not None
     assert hot is not None
     assert cold.bound.proven

@@ -12,16 +12,14 @@ from tcopt.assess import Assessment, Verdict
 from tcopt.operation import Operation
 from tcopt.spread.figures import FIGURES
 from tcopt.spread.plan import Plan
-from tcopt.spread.sample import block_count, normals, points
+from tcopt.spread.sample import block_count, points
 from tcopt.spread.trim import Flags
 
 if TYPE_CHECKING:
     from tcopt.design import Bound
 
-__all__ = ["QUANTILE", "Compared", "SiliconFigures", "SiliconResult", "silicon_figures"]
+__all__ = ["Compared", "SiliconFigures", "SiliconResult", "silicon_figures"]
 
-QUANTILE = 0.997
-"""Share of the parts that stays within the figures that are stated: three sigma's."""
 _MOST_PARTS = 8192
 
 
@@ -32,10 +30,10 @@ class SiliconFigures:
     Attributes
     ----------
     parts : how many were drawn
-    box_ppm_per_K : `QUANTILE` of the residual's box drift
+    box_ppm_per_K : the residual's box drift that the study's yield, a share of the parts, keeps to
     median_box_ppm_per_K : half of the parts stay within it
-    untrimmed_box_ppm_per_K : `QUANTILE` of it before the trim; None without a trim
-    deviation_ppm : `QUANTILE` of ``max |I/I_target - 1|``
+    untrimmed_box_ppm_per_K : the same before the trim; None without a trim
+    deviation_ppm : the same share's of ``max |I/I_target - 1|``
     spread : one standard deviation of the current at the reference, untrimmed, over its mean [1]
     beyond_trim : share of the parts that the trim cannot reach [1]; None without a trim
     limit : the study's limit against the quantile of its figure, or None
@@ -73,7 +71,7 @@ class SiliconResult:
     paper : the best design without spread
     single : the best single material, in each slot
     causes : what varied, in words
-    quantile : share of the parts that stays within the figures
+    quantile : share of the parts that stays within the figures, the study's yield [1]
     """
 
     sigma: float
@@ -83,7 +81,7 @@ class SiliconResult:
     paper: Compared
     single: Compared | None
     causes: tuple[str, ...]
-    quantile: float = QUANTILE
+    quantile: float
 
 
 def silicon_figures(found: Assessment) -> SiliconFigures:
@@ -100,7 +98,7 @@ def silicon_figures(found: Assessment) -> SiliconFigures:
     beyond: list[Flags] = []
     for number in range(block_count(spread.samples)):
         unit = points(spread.sampling, spread.seed, variates, spread.samples, number)
-        made = plan.made(normals(unit))
+        made = plan.made(plan.variates_of(unit))
         blocks.append(made.figures)
         if made.settings:
             beyond.append(np.asarray(made.settings[-1].beyond.any(axis=1)))
@@ -111,16 +109,15 @@ def silicon_figures(found: Assessment) -> SiliconFigures:
     current = figures[0, :, FIGURES.index("current")]
     current = current[np.isfinite(current)]
     box = last["residual_box"] * 1e6
+    share = spread.wanted_yield
     made_figures = SiliconFigures(
         parts=figures.shape[1],
-        box_ppm_per_K=_quantile(box, QUANTILE),
+        box_ppm_per_K=_quantile(box, share),
         median_box_ppm_per_K=_quantile(box, 0.5),
-        untrimmed_box_ppm_per_K=_quantile(
-            1e6 * figures[0, :, FIGURES.index("residual_box")], QUANTILE
-        )
+        untrimmed_box_ppm_per_K=_quantile(1e6 * figures[0, :, FIGURES.index("residual_box")], share)
         if beyond
         else None,
-        deviation_ppm=_quantile(last["deviation"] * 1e6, QUANTILE),
+        deviation_ppm=_quantile(last["deviation"] * 1e6, share),
         spread=float(current.std() / current.mean()),
         beyond_trim=float(np.concatenate(beyond).mean()) if beyond else None,
         limit=None,

@@ -105,19 +105,25 @@ class Program:
         return each if self.offer.join == "series" else 1 / each
 
     def _scale_bounds(self) -> list[tuple[float, float]]:
-        """Return the bounds of u_k.
+        """Return the bounds of u_k, which divides what is linear for the join.
 
+        So it is the inverse of a resistance's scale in series, and that scale in parallel.
         A knob of the output scales the current, which is nearly the inverse of
-        the resistance: its band is taken about the scale that it had last, so
+        the resistance, or of the conductance where it rises with the resistance:
+        its band is taken about the scale that it had last, so
         that u_k comes to one and the band to what it should be.
         """
         slot, output = self.room.knobs.of(self.band.slot), self.room.knobs.output
+        in_series = self.offer.join == "series"
         bounds = [(1.0, 1.0)]
         for c in self.output_scale[1:].tolist():
             if slot is not None:
-                bounds.append((1 / slot.high, 1 / slot.low))
+                inverse = (1 / slot.high, 1 / slot.low)
+                bounds.append(inverse if in_series else (slot.low, slot.high))
             elif output is not None:
-                low, high = max(0.3, c * output.low), min(3.0, c * output.high)
+                low, high = max(1 / 3, c * output.low), min(3.0, c * output.high)
+                if in_series == self._rises:
+                    low, high = 1 / high, 1 / low
                 bounds.append((low, high) if low < high else (1.0, 1.0))
             else:
                 bounds.append((1.0, 1.0))
@@ -216,9 +222,12 @@ class Program:
         found = [(order, np.zeros(1))]
         knob, which = self.room.knobs.part_of(self.band.slot), self._trimmed_part
         if knob is not None and which is not None:
+            least, most = knob.low, knob.high
+            if self.offer.join == "parallel":
+                least, most = 1 / most, 1 / least
             reach = np.zeros((2 * K, width))
             for k in range(K):
-                up, down = (knob.high - 1, 1 - knob.low) if k else (0.0, 0.0)
+                up, down = (most - 1, 1 - least) if k else (0.0, 0.0)
                 reach[k, n + K + k], reach[k, which] = 1, -up
                 reach[K + k, n + K + k], reach[K + k, which] = -1, -down
             found.append((reach, np.zeros(2 * K)))

@@ -88,6 +88,7 @@ def design_for_silicon(question: Question, progress: Progress | None = None) -> 
         paper=_of(on_paper[0], compared),
         single=_of(singles[0], compared) if singles else None,
         causes=tuple(variate.name for variate in room.causes.variation.variates),
+        quantile=study.spread.wanted_yield,
     )
     front: Sequence[FrontPoint] = ()
     if layout is not None and layout.standard is None and layout.front and question.open_slots:

@@ -115,9 +115,11 @@ def search_within(
     if all(knob.slot in {None, name} for knob in room.knobs.each):
         best, single, least = search_one_slot_for_silicon(groups, slot, room, keep, progress)
         # without a trim the scale of the output is settled by choosing again and again, and a
-        # free input is tried over a grid: neither is part of the program
+        # free input is tried over a grid: neither is part of the program, nor is the heat that a
+        # current off its target gives the die
         free = any(span is not None for _, span in question.groups)
-        return best, single, Bound(least, proven=room.knobs.is_linear and not free)
+        warms = bool(question.study.range.thermal_resistance)
+        return best, single, Bound(least, proven=room.knobs.is_linear and not free and not warms)
     best, single, least = search_one_slot_by_steps(groups, slot, room, keep, progress)
     return best, single, Bound(least, proven=False)
 

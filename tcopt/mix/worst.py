@@ -78,8 +78,10 @@ def worst_points(
     level, middle = by_cause.mean(axis=1), float(off.mean())
     beyond = sigma * float(np.linalg.norm(level)) + max(middle + reach[0], -middle - reach[1])
     if beyond > 0:
-        point = sigma * level / np.linalg.norm(level)
-        found.append(Worst(size * beyond, np.stack([point, -point])))
+        length = float(np.linalg.norm(level))
+        # out of reach as it stands, and no cause moves it: no point is worse than another
+        point = sigma * level / length if length > 0 else np.empty((0, len(level)))
+        found.append(Worst(size * beyond, np.stack([point, -point]) if length > 0 else point))
     if len(others) > 1:
         idle = _largest(*_between(off, by_cause), sigma, size)
         found.append(replace(idle, at_most=True))
