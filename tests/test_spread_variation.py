@@ -233,6 +233,25 @@ def test_offset_between_thresholds_is_as_the_loop_has_it(specific_current: float
     assert slope == pytest.approx(by_loop, rel=1e-4)
 
 
+def test_offset_between_thresholds_of_a_warm_die() -> None:
+    """The same part where the range is as warm as the die: the heat counts once."""
+    cold = _mos_core(matching=2e-9, gate_area=1e-11)
+    study = cold.study
+    warmed = study.range.model_copy(update={"thermal_resistance": 5e4})
+    biased = study.circuit.model_copy(update={"supply": 5.0, "output_voltage": 5.0})
+    hot = plan_of(study.model_copy(update={"range": warmed, "circuit": biased}))
+    die = hot.operation.die_temperature(np.array([T_0]))
+    assert die[0] > T_0 + 10
+    z = np.array([[-1.0], [1.0]])
+    moved, by_hand = (
+        np.log(found["N"][1] / found["N"][0])
+        for found in (hot.variation.quantities(z, die), cold.variation.quantities(z, die))
+    )
+    np.testing.assert_allclose(moved, by_hand, rtol=1e-12)
+    at_rest = output_of(hot.variation, np.array([[0.0]]), np.array([T_0]))
+    np.testing.assert_allclose(at_rest, hot.operation.output(np.array([[T_0]])), rtol=1e-10)
+
+
 def test_threshold_and_specific_current_vary() -> None:
     plan = _mos_core(threshold_spread=0.02, specific_current_spread=0.1)
     found = plan.variation.quantities(np.array([[1.0, -1.0]]), np.array([T_0]))

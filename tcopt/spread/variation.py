@@ -18,6 +18,7 @@ from scipy.special import ndtr
 from tcopt.arrays import Array
 from tcopt.laws import generated
 from tcopt.operation import Mix, Operation
+from tcopt.solve import currents
 from tcopt.symbols import resistance_name
 
 __all__ = [
@@ -126,13 +127,15 @@ class Variation:
     def _per_volt(self, T: Array) -> Array:
         """Return ``g_m/I`` of the output transistor of the design as stated [1/V].
 
-        ``(1 - exp(-s))/(s n V_T)``, ``s = sqrt(I/(N I_spec))``, from the law in all regions of
-        inversion. So an offset between the thresholds of a pair, small against n V_T, moves
-        the current as this ratio of widths does.
+        At die temperatures [K], in all regions of inversion (`tcopt.laws.mosfet`). So an offset
+        between the thresholds of a pair, small against n V_T, moves the current as this ratio
+        of widths does.
         """
+        circuit = self.operation.circuit
         found = self.operation.quantities(T)
-        s = np.sqrt(self.operation.output(T) / (found["N"] * found["I_spec"]))
-        return np.asarray(-np.expm1(-s) / (s * found["n"] * found["V_T"]))
+        output = currents(circuit, found)[circuit.currents[-1]]
+        s = np.sqrt(output / (found["N"] * found["I_spec"]))
+        return np.asarray(generated.transconductance_share(s) / (found["n"] * found["V_T"]))
 
     def _resistance(
         self, slot: str, mix: Mix, z: Array, T: Array, scales: Mapping[Scale, ArrayLike]
