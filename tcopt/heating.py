@@ -46,7 +46,8 @@ def heated(
     Raises
     ------
     NoSolutionError
-        If the power grows with temperature faster than the heat flows off.
+        If the power grows with temperature faster than the heat flows off, or if the
+        search for the temperature comes to no end.
     """
     T = np.array(ambient, dtype=float)
     watts, slope = power(T)
@@ -55,19 +56,27 @@ def heated(
         room = 1 - resistance * slope
         runs_away = works & ~(room > 0)
         if runs_away.any():
-            break
+            raise NoSolutionError(
+                f"range.thermal_resistance: found {resistance:.4g} K/W, with which the die runs "
+                f"away at {_first(ambient, runs_away)}: its power grows faster with its "
+                "temperature than the heat flows off; accepted: a lower thermal resistance"
+            )
         step = (ambient + resistance * watts - T) / room
         T = T + step
-        if not (np.abs(step) > _CLOSE).any():
+        moving = np.abs(step) > _CLOSE
+        if not moving.any():
             return np.asarray(T)
         watts, slope = power(T)
-    bad = runs_away if runs_away.any() else works
-    where = float(np.broadcast_to(ambient, T.shape)[bad].flat[0])
     raise NoSolutionError(
-        f"range.thermal_resistance: found {resistance:.4g} K/W, with which the die runs away at "
-        f"{where - 273.15:.4g} degC: its power grows faster with its temperature than the heat "
-        "flows off; accepted: a lower thermal resistance"
+        f"range.thermal_resistance: found {resistance:.4g} K/W, with which the temperature of the "
+        f"die at {_first(ambient, moving)} was not found in {_STEPS} steps of Newton's method, "
+        "though its power does not run away; accepted: a lower thermal resistance"
     )
+
+
+def _first(ambient: Array, where: np.ndarray[Any, np.dtype[np.bool_]]) -> str:
+    """Return the first of the ambient temperatures that are marked, as text in degC."""
+    return f"{float(np.broadcast_to(ambient, where.shape)[where].flat[0]) - 273.15:.4g} degC"
 
 
 def heated_in_steps(ambient: Array, resistance: float, power: Callable[[Array], Array]) -> Array:

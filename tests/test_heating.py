@@ -12,6 +12,7 @@ import pytest
 
 from tcopt.check import check, finished_operation
 from tcopt.errors import InputError, NoSolutionError
+from tcopt.heating import heated
 from tcopt.mix import search
 from tcopt.study import load_study
 from tests.gate import GONE, PROCESS, STUDY, changed, write
@@ -178,6 +179,23 @@ def test_a_die_that_runs_away_is_named(tmp_path):
     operation = finished_operation(loaded(tmp_path, falling, **{"range.to": "60 degC"}))
     with pytest.raises(NoSolutionError, match=r"range.thermal_resistance: found 150 K/W, with whi"):
         operation.output(np.array([T_0]))
+
+
+def test_a_search_without_an_end_is_not_called_running_away():
+    """Newton's method on the signed root x/sqrt(|x|) goes from x to -x for ever (by hand).
+
+    There x = T - 350 K and the room for heat, 1/(2 sqrt(|x|)), is above zero everywhere.
+    """
+    ambient, R = np.array([300.0]), 100.0
+
+    def power(T):
+        x = T - 350.0
+        root = np.sqrt(np.abs(x))
+        return (T - ambient - np.sign(x) * root) / R, (1 - 0.5 / root) / R
+
+    message = r"100 K/W, with which the temperature of the die at 26.85 degC was not found in 40 st"
+    with pytest.raises(NoSolutionError, match=message):
+        heated(ambient, R, power)
 
 
 def test_several_outputs_do_not_heat_yet(tmp_path):
