@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import time
-
 import numpy as np
 import pytest
 
@@ -36,8 +34,18 @@ def test_omega_is_asked_at_the_drops_of_the_same_mirrors() -> None:
 
 
 def test_ratio_is_first_over_second() -> None:
-    times = time_beside(lambda: time.sleep(0.02), lambda: time.sleep(0.005), rounds=3)
-    assert times.ratio == pytest.approx(4, rel=0.3)
+    now = 0.0
+    long, short = iter((9.0, 3.0, 2.0, 4.0)), iter((9.0, 0.5, 0.75, 0.6))
+
+    def wait(seconds: float) -> None:
+        nonlocal now
+        now += seconds
+
+    times = time_beside(
+        lambda: wait(next(long)), lambda: wait(next(short)), rounds=3, clock=lambda: now
+    )
+    assert (times.first, times.second) == (2.0, 0.5)
+    assert times.ratio == pytest.approx(4)
     calls: list[str] = []
     time_beside(lambda: calls.append("a"), lambda: calls.append("b"), rounds=3, second_rounds=1)
     assert calls == ["a", "a", "b", "a", "a"]

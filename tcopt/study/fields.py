@@ -14,7 +14,7 @@ from pydantic_core import PydanticCustomError
 from tcopt.units import accepted_quantity, parse, shown
 
 __all__ = [
-    "Check", "Current", "Curvature", "Fraction", "Name", "Resistance", "SaturationCurrent",
+    "Check", "Current", "Curvature", "Name", "Resistance", "SaturationCurrent",
     "Slope", "Temperature",
     "Text", "Title", "Voltage", "quantity", "refusal", "whole", "without_repeats", "words",
 ]  # fmt: skip
@@ -131,7 +131,6 @@ def without_repeats(items: tuple[T, ...], label: Callable[[T], Hashable] = repr)
 _NAME_WORDS = f"a name of letters, digits and, inside, ' _.+-', at most {_LONGEST_NAME} characters"
 _LINE_WORDS = f"one line of text, at most {_LONGEST_LINE} characters"
 
-Fraction = Annotated[float, quantity("1", "a fraction such as '5 %' or 0.05", at_least=0, below=1)]
 Current = Annotated[float, quantity("A", above=0, below=1e3)]
 SaturationCurrent = Annotated[float, quantity("A", above=1e-100, below=1)]
 Voltage = Annotated[float, quantity("V", above=0, below=1e4)]

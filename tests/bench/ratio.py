@@ -30,12 +30,13 @@ def time_beside(
     second: Callable[[], object],
     rounds: int = 7,
     second_rounds: int | None = None,
+    clock: Callable[[], float] = time.perf_counter,
 ) -> Times:
     """Run both in turn, ``rounds`` times after one round that does not count, and keep the minima.
 
     Taking turns lets both meet the same load of the machine; the minimum is the run that was
     disturbed least. ``second_rounds``: fewer turns for a second that takes very long (0 is not
-    enough); its first run then counts.
+    enough); its first run then counts. ``clock``: what the time [s] is read from.
     """
     turns = rounds if second_rounds is None else second_rounds
     first()
@@ -49,9 +50,9 @@ def time_beside(
             for k, thing in enumerate((first, second)):
                 if k == 1 and turn >= turns:
                     continue
-                start = time.perf_counter()
+                start = clock()
                 thing()
-                shortest[k] = min(shortest[k], time.perf_counter() - start)
+                shortest[k] = min(shortest[k], clock() - start)
     finally:
         if was_on:
             gc.enable()

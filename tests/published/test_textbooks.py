@@ -9,7 +9,7 @@ import pytest
 
 from tcopt.drift import drift_of
 from tcopt.laws.numbers import VOLT_PER_KELVIN, thermal_voltage
-from tcopt.solve import currents, numerics, sensitivities
+from tcopt.solve import numerics, sensitivities
 from tests.published.worked import flat_at, needed, output, slope, widlar
 
 V_300 = float(thermal_voltage(300.0))
@@ -166,7 +166,7 @@ def test_box_method() -> None:
     assert drift.endpoint_ppm_per_K == pytest.approx(887, abs=0.5)
 
 
-@pytest.mark.parametrize(("T", "ppm_per_K"), [(315.65, 15), (300.0, 18), (330.0, 20)])
+@pytest.mark.parametrize(("T", "ppm_per_K"), [(315.65, 15), (300.0, 18)])
 def test_curvature_left_after_linear_cancellation(T: float, ppm_per_K: float) -> None:
     """T ln T leaves 15 to 19 ppm/K over -40..125 degC, eta 4, PTAT-biased (calc).
 
