@@ -68,6 +68,14 @@ PROCESS_REFUSALS = [
         "npn.bandgap_voltage: found nothing; accepted: a v",
     ),
     (
+        {"transistors.npn.varshni_coefficient": "0.473 mV/K"},
+        "npn.varshni_temperature: found nothing; accepted: a temperature such as '636 K', since v",
+    ),
+    (
+        {"transistors.npn.varshni_temperature": "636 K"},
+        "npn.varshni_coefficient: found nothing; accepted: a slope such as '0.473 mV/K', since v",
+    ),
+    (
         {"transistors.npn.temperature_exponent": "3 K"},
         "exponent: found '3 K'; accepted: a pure num",
     ),

@@ -100,3 +100,22 @@ def test_upper_root_at_and_below_its_end() -> None:
     np.testing.assert_array_equal(
         upper_root([[1 - 1e-15, 0.0], [-1.0, np.nan]]), np.full((2, 2), np.nan)
     )
+
+
+@pytest.mark.parametrize("T", TEMPERATURES[::4])
+def test_a_bandgap_that_curves(T: float) -> None:
+    """``I_S ~ T^eta exp(-V_G(T)/V_T)`` with Varshni's V_G (1967, *Physica* 34) in 50 digits."""
+    T_0, eta, V_G0, a, b = 290.0, 3.6, 1.17, 0.473e-3, 636.0
+
+    def log_current(t: Any) -> Any:
+        m = oracle.mp.mpf
+        gap = m(V_G0) - m(a) * t**2 / (t + m(b))
+        return m(eta) * oracle.mp.log(t) - gap / oracle.thermal_voltage(t)
+
+    data = (T_0, eta, V_G0, a, b, VOLT_PER_KELVIN)
+    growth = log_current(oracle.mp.mpf(T)) - log_current(oracle.mp.mpf(T_0))
+    assert laws.log_saturation_growth(T, *data) == pytest.approx(
+        float(growth), rel=1e-13, abs=1e-13
+    )
+    by_slope = float(oracle.mp.diff(log_current, oracle.mp.mpf(T)))
+    assert laws.log_saturation_slope(T, *data) == pytest.approx(by_slope, rel=1e-13)

@@ -50,9 +50,9 @@ class JunctionData(Protocol):
     @property
     def bandgap_voltage(self) -> float: ...  # noqa: D102
     @property
-    def varshni_coefficient(self) -> float: ...  # noqa: D102
+    def varshni_coefficient(self) -> float | None: ...  # noqa: D102
     @property
-    def varshni_temperature(self) -> float: ...  # noqa: D102
+    def varshni_temperature(self) -> float | None: ...  # noqa: D102
 
 
 def thermal_voltage(temperature: ArrayLike) -> Array:
@@ -110,7 +110,7 @@ def _junction(
         transistor.reference,
         transistor.temperature_exponent,
         transistor.bandgap_voltage,
-        transistor.varshni_coefficient,
-        transistor.varshni_temperature,
+        transistor.varshni_coefficient or 0.0,
+        transistor.varshni_temperature or 0.0,
         VOLT_PER_KELVIN,
     )

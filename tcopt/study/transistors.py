@@ -68,7 +68,8 @@ class Transistor(Model):
     early_voltage : [V]
     varshni_coefficient, varshni_temperature : curvature of the bandgap voltage,
         ``V_G(T) = bandgap_voltage - coefficient T^2/(T + temperature)`` [V/K], [K];
-        without them it is a constant
+        both or neither, with which it is a constant. 0.473 mV/K and 636 K are commonly used
+        for silicon, after Thurmond (1975; figures and source from memory)
     leakage_current : of the collector junction, at the reference; doubles every 10 K [A]
     saturation_voltage : collector-emitter voltage below which it leaves the forward
         active region; 0.2 V is common practice [V]
@@ -94,8 +95,8 @@ class Transistor(Model):
     current_gain: _Positive | None = None
     current_gain_exponent: _Exponent = 0.0
     early_voltage: Voltage | None = None
-    varshni_coefficient: _VoltPerKelvin = 0.0
-    varshni_temperature: Temperature = 636.0
+    varshni_coefficient: _VoltPerKelvin | None = None
+    varshni_temperature: Temperature | None = None
     leakage_current: _Leakage | None = None
     saturation_voltage: Voltage = 0.2
     saturation_current_spread: _SaturationSpread | None = None
@@ -155,6 +156,22 @@ class Transistor(Model):
                 "both",
                 "either saturation_current_spread or base_emitter_spread",
                 "base_emitter_spread",
+            )
+        return self
+
+    @model_validator(mode="after")
+    def _whole_curvature(self) -> Transistor:
+        given = (self.varshni_coefficient is not None, self.varshni_temperature is not None)
+        if given[0] != given[1]:
+            missing, such = (
+                ("varshni_temperature", "a temperature such as '636 K'")
+                if given[0]
+                else ("varshni_coefficient", "a slope such as '0.473 mV/K'")
+            )
+            raise refusal(
+                "nothing",
+                f"{such}, since varshni_coefficient and varshni_temperature go together",
+                missing,
             )
         return self
 
