@@ -33,15 +33,18 @@ class StillPoint:
     Attributes
     ----------
     gate_voltage : at the reference [V]
-    current : at the reference [A]
-    inversion_coefficient : there [1]
-    box_ppm_per_K : drift over the range with that voltage, by the box method
+    current : at the reference [A]; None without one
+    inversion_coefficient : there [1]; None without a current
+    box_ppm_per_K : drift over the range with that voltage, by the box method; None where the
+        current does not exist all over the range
+    why_not : why one of them is None, in words
     """
 
     gate_voltage: float
-    current: float
-    inversion_coefficient: float
-    box_ppm_per_K: float
+    current: float | None
+    inversion_coefficient: float | None
+    box_ppm_per_K: float | None
+    why_not: str | None = None
 
 
 def still_point(operation: Operation) -> StillPoint | None:
@@ -76,14 +79,18 @@ def still_point(operation: Operation) -> StillPoint | None:
     study = operation.study.model_copy(update={"circuit": circuit})
     there = replace(operation, study=study)
     try:
+        current = float(there.output(at)[0])
+        coefficient = float(inversion(there, at)["output"][0])
+    except NoSolutionError as error:
+        return StillPoint(gate, None, None, None, str(error))
+    try:
         points = extreme_points(there.output, study.range.low, study.range.high)
-        output = there.output(np.append(points, at))
-    except NoSolutionError:
-        return None
+        output = there.output(points)
+    except NoSolutionError as error:
+        return StillPoint(gate, current, coefficient, None, str(error))
     span = study.range.high - study.range.low
-    box = 1e6 * float(np.ptp(output[:-1])) / (float(output[-1]) * span)
-    coefficient = float(inversion(there, at)["output"][0])
-    return StillPoint(gate, float(output[-1]), coefficient, box)
+    box = 1e6 * float(np.ptp(output)) / (current * span)
+    return StillPoint(gate, current, coefficient, box)
 
 
 def _crossing(slope: Callable[[Array], Array], low: float, high: float) -> float | None:

@@ -84,3 +84,39 @@ def test_none_where_mobility_does_not_fall(tmp_path):
 def test_none_for_another_circuit(tmp_path):
     core = {"topology": "ptat core", "transistor": "npn", "area_ratio": 8}
     assert still_point(operation(tmp_path, core, {"core": "5 kohm"})) is None
+
+
+def test_what_is_known_stays_where_heat_takes_the_rest(tmp_path):
+    """The voltage at a cold die is known whatever the heat; the study's own 0.2 V hardly heats."""
+    cold = still_point(operation(tmp_path, BIAS, {}))
+    biased = {**BIAS, "reference_voltage": "0.2 V", "output_voltage": "10 V"}
+    hot = still_point(operation(tmp_path, biased, {}, range__thermal_resistance=1e7))
+    assert hot.gate_voltage == pytest.approx(cold.gate_voltage, rel=1e-12)
+    assert (hot.current, hot.inversion_coefficient, hot.box_ppm_per_K) == (None, None, None)
+    assert hot.why_not.startswith("range.thermal_resistance: found 1e+07 K/W, with which the die")
+
+
+def test_no_box_where_heat_takes_an_end_of_the_range(tmp_path):
+    """A reference that rises as the square of temperature, 3.9 times at 125 degC."""
+    biased = {**BIAS, "reference_voltage": "0.2 V", "output_voltage": "10 V"}
+    rising = {**biased, "reference_tc2": 3e-4}
+    found = still_point(operation(tmp_path, rising, {}, range__thermal_resistance=1e3))
+    assert found.current == pytest.approx(53.28e-6, rel=1e-3)
+    assert found.box_ppm_per_K is None
+    assert found.why_not.startswith("range.thermal_resistance: found 1000 K/W, with which the")
+
+
+@pytest.mark.parametrize(
+    ("heat", "sentence"),
+    [
+        (1e7, "would stand still at T_ref, but there is none: range.thermal_resistance: found"),
+        (1e3, "stands still at T_ref; it does not exist all over the range: range.thermal"),
+    ],
+)
+def test_the_report_says_why(heat, sentence, tmp_path):
+    from tcopt.show.tables.devices import still_sentence
+
+    biased = {**BIAS, "reference_voltage": "0.2 V", "output_voltage": "10 V"}
+    rising = {**biased, "reference_tc2": 3e-4}
+    found = still_point(operation(tmp_path, rising, {}, range__thermal_resistance=heat))
+    assert sentence in still_sentence(found)

@@ -77,4 +77,5 @@ def _still_point(found: StillPoint) -> dict[str, Any]:
         "current_A": found.current,
         "inversion_coefficient": found.inversion_coefficient,
         "box_ppm_per_K": found.box_ppm_per_K,
+        "why_not": found.why_not,
     }

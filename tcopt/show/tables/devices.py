@@ -19,8 +19,9 @@ if TYPE_CHECKING:
     from tcopt.check import CheckResult
     from tcopt.headroom import Headroom, Limit
     from tcopt.start_up import StartUp
+    from tcopt.still_point import StillPoint
 
-__all__ = ["device_sections"]
+__all__ = ["device_sections", "still_sentence"]
 
 
 def device_sections(result: CheckResult, places: Sequence[str]) -> list[RenderableType]:
@@ -35,20 +36,26 @@ def device_sections(result: CheckResult, places: Sequence[str]) -> list[Renderab
             row(table, name, *cells)
         parts += [heading("Across the range"), table]
     if result.still_point is not None:
-        point = result.still_point
-        parts.append(
-            Text(
-                f"At a gate voltage of {format_quantity(point.gate_voltage, 'V', 5)} the current, "
-                f"then {format_quantity(point.current, 'A')} at an inversion coefficient of "
-                f"{number(point.inversion_coefficient)}, stands still at T_ref; over the range "
-                f"{number(point.box_ppm_per_K)} ppm/K (box) are left."
-            )
-        )
+        parts.append(Text(still_sentence(result.still_point)))
     if result.headroom_at_places is not None:
         parts += _headroom(result, result.headroom_at_places, places)
     if result.start_up is not None:
         parts += [heading("Start-up"), _start_up(result.start_up, places)]
     return parts
+
+
+def still_sentence(point: StillPoint) -> str:
+    """Return what is known of the gate voltage at which the current stands still, in words."""
+    gate = f"At a gate voltage of {format_quantity(point.gate_voltage, 'V', 5)} the current"
+    if point.current is None or point.inversion_coefficient is None:
+        return f"{gate} would stand still at T_ref, but there is none: {point.why_not}."
+    still = (
+        f"{gate}, then {format_quantity(point.current, 'A')} at an inversion coefficient of "
+        f"{number(point.inversion_coefficient)}, stands still at T_ref; "
+    )
+    if point.box_ppm_per_K is None:
+        return f"{still}it does not exist all over the range: {point.why_not}."
+    return f"{still}over the range {number(point.box_ppm_per_K)} ppm/K (box) are left."
 
 
 def _cells(values: Array, unit: str, digits: int = 4) -> list[str]:
