@@ -11,27 +11,33 @@ from scipy.optimize import brentq
 
 from tcopt.laws import generated as laws
 from tcopt.laws.numbers import VOLT_PER_KELVIN
-from tcopt.solve import currents, needed_resistance, numerics, sensitivities
+from tcopt.solve import IDEAL, currents, needed_resistance, numerics, sensitivities
 from tests import junction
 
 __all__ = ["Sum", "flat_at", "needed", "output", "slope", "widlar"]
 
 
-def output(topology: str, feed: str, **quantities: Any) -> Any:
+def output(topology: str, feed: str, device: str = IDEAL, **quantities: Any) -> Any:
     """Return the output current [A]."""
-    return currents(numerics(topology, feed), quantities)["I_out"]
+    return currents(numerics(topology, feed, device), quantities)["I_out"]
 
 
-def needed(topology: str, feed: str, slot: str, current: float, **quantities: Any) -> float:
+def needed(
+    topology: str, feed: str, slot: str, current: float, device: str = IDEAL, **quantities: Any
+) -> float:
     """Return the resistance [ohm] that a slot needs for this output [A]."""
-    return float(needed_resistance(numerics(topology, feed), slot, current, quantities))
+    return float(needed_resistance(numerics(topology, feed, device), slot, current, quantities))
 
 
 def slope(
-    topology: str, feed: str, quantities: Mapping[str, Any], log_slopes: Mapping[str, Any]
+    topology: str,
+    feed: str,
+    quantities: Mapping[str, Any],
+    log_slopes: Mapping[str, Any],
+    device: str = IDEAL,
 ) -> Any:
     """Return (dI_out/dT)/I_out [1/K], given d ln q/dT of the quantities that move."""
-    circuit = numerics(topology, feed)
+    circuit = numerics(topology, feed, device)
     by_quantity = sensitivities(circuit, quantities)
     return sum(by_quantity[name] * value for name, value in log_slopes.items())
 
