@@ -43,7 +43,8 @@ class CascadeDesign:
     outputs : name -> the designs of this output, the others being as in the best design;
         so is its bound
     warnings : traps of the whole best design
-    examined, skipped : combinations solved, and ruled out by the bound without solving
+    examined, skipped : combinations solved; and ruled out by the bound without solving,
+        together with designs that, rounded or beside the other outputs, have no solution
     """
 
     study: CascadeStudy

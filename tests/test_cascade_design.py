@@ -13,10 +13,12 @@ from typing import Any
 
 import numpy as np
 import pytest
+from numpy.polynomial import Chebyshev
 from rich.console import RenderableType
 from scipy.optimize import minimize
 from typer.testing import CliRunner
 
+from tcopt.assess import Assessment, assess
 from tcopt.cascade import Cascade
 from tcopt.check_cascade import check_cascade
 from tcopt.cli import app
@@ -277,6 +279,29 @@ def test_inputs_are_listed_where_there_are_several() -> None:
     text = _text(cascade_design_report(design_cascade(question((), (6e-5, 1e-4), slot=ONE_PIECE))))
     assert "Input currents, best first" in text
     assert "Ranked by the output whose figure is largest relative to its limit" in text
+
+
+@pytest.mark.parametrize("smooth", [True, False])
+def test_designs_without_a_solution_are_counted(
+    smooth: bool, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """Whether the load is the polynomial of the search, or what the chosen others draw."""
+    whole = real().outputs["small"]
+    second = whole.designs[1].operation.mixes
+
+    def failing(operation: Operation) -> Assessment:
+        load = operation.other_bases
+        now = load is not None and isinstance(load.value, Chebyshev) == smooth
+        if now and operation.mixes == second:
+            raise NoSolutionError("no solution")
+        return assess(operation)
+
+    monkeypatch.setattr("tcopt.mix.cascade.assess", failing)
+    result = design_cascade(question())
+    found = result.outputs["small"]
+    assert all(each.operation.mixes != second for each in found.designs)
+    assert found.skipped == whole.skipped + 1
+    assert result.skipped > real().skipped
 
 
 def test_documents_have_what_a_single_output_has() -> None:

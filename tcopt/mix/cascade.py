@@ -160,7 +160,9 @@ class _Search:
             # of two so equal that each is better once the other leads, the chosen one leads
             led = [d for d in designs if _alone(d.operation) == _alone(chosen[name])]
             others = [d for d in designs if _alone(d.operation) != _alone(chosen[name])]
-            results[name] = _result([*led, *others][:keep], ranked[name])
+            dropped = len(ranked[name].designs) - len(designs)
+            self.skipped += dropped
+            results[name] = _result([*led, *others][:keep], ranked[name], dropped)
         if self._progress is not None:
             self._progress(self._total, self._total)
         return results, _complete({name: result.winner for name, result in results.items()})
@@ -241,14 +243,15 @@ class _Search:
             self._without[name] = str(error)
             return None
         self.examined += best.examined
-        self.skipped += best.skipped
+        skipped = best.skipped
         slots = tuple(open_slots(study))
         designs = []
         for fit in best.ranked()[: keep + SPARE]:
             try:
                 designs.append(assess(replace(rounded(fit.operation, slots), study=study)))
             except NoSolutionError:
-                continue
+                skipped += 1
+        self.skipped += skipped
         if not designs:
             self._without[name] = (
                 "no allowed mix gives the target current over the whole range; accepted: ratios, "
@@ -256,7 +259,7 @@ class _Search:
             )
             return None
         designs.sort(key=_deviation)
-        return _Output(tuple(designs), bound, best.examined, best.skipped)
+        return _Output(tuple(designs), bound, best.examined, skipped)
 
 
 def _deviation(found: Assessment) -> float:
@@ -311,7 +314,10 @@ def _complete(found: Mapping[str, Assessment]) -> CascadeCandidate:
 
 
 def _beside(name: str, chosen: Mapping[str, Operation], output: _Output) -> list[Assessment]:
-    """Return the designs of one output, best first, each solved with those of the others."""
+    """Return the designs of one output, best first, each solved with those of the others.
+
+    Without those that then have no solution.
+    """
     if output.designs[0].operation.other_bases is None:
         return list(output.designs)
     found: list[Assessment] = []
@@ -324,7 +330,7 @@ def _beside(name: str, chosen: Mapping[str, Operation], output: _Output) -> list
     return sorted(found, key=_deviation)
 
 
-def _result(designs: Sequence[Assessment], output: _Output) -> DesignResult:
+def _result(designs: Sequence[Assessment], output: _Output, dropped: int) -> DesignResult:
     study = designs[0].operation.study
     return DesignResult(
         study=study,
@@ -333,5 +339,5 @@ def _result(designs: Sequence[Assessment], output: _Output) -> DesignResult:
         bound=output.bound,
         needed={slot: needed_point(designs[0], slot) for slot in open_slots(study)},
         examined=output.examined,
-        skipped=output.skipped,
+        skipped=output.skipped + dropped,
     )
