@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 
 from tcopt.solve import currents, numerics
+from tests.bench.bench_devices import nested_root_finder, real_mirror
 from tests.bench.bench_solve import (
     given_mirror,
     supplied_by_root_finder,
@@ -20,6 +21,14 @@ def test_root_finder_solves_the_same_loops() -> None:
     mirror = supplied_mirror(500)
     found = currents(numerics("degenerated mirror", "supply"), mirror)
     I_in, I_out = supplied_by_root_finder(mirror)
+    np.testing.assert_allclose(found["I_in"], I_in, rtol=1e-8)
+    np.testing.assert_allclose(found["I_out"], I_out, rtol=1e-8)
+
+
+def test_nested_root_finder_solves_the_same_loops() -> None:
+    mirror = real_mirror(200)
+    found = currents(numerics("degenerated mirror", "given", "bipolar"), mirror)
+    I_in, I_out = nested_root_finder(mirror)
     np.testing.assert_allclose(found["I_in"], I_in, rtol=1e-8)
     np.testing.assert_allclose(found["I_out"], I_out, rtol=1e-8)
 
