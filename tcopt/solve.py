@@ -20,7 +20,8 @@ from numpy.typing import ArrayLike
 from tcopt import newton
 from tcopt.arrays import Array
 from tcopt.numerics import IDEAL, Numerics, arguments_of, numerics
-from tcopt.real import log_currents, needed, real_of, solution
+from tcopt.pinned import needed
+from tcopt.real import log_currents, real_of, solution
 from tcopt.symbols import resistance_name
 
 __all__ = [
