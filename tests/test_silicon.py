@@ -21,7 +21,7 @@ from tcopt.mix.room import Room
 from tcopt.mix.sampled import SiliconFigures, silicon_figures
 from tcopt.mix.screen import screened
 from tcopt.mix.search import design
-from tcopt.mix.silicon import best_silicon_fit
+from tcopt.mix.silicon import best_silicon_fit, silicon_outcome
 from tcopt.mix.worst import worst_points
 from tcopt.operation import Mix
 from tcopt.solve import currents
@@ -232,17 +232,41 @@ def test_a_general_optimiser_finds_nothing_better() -> None:
     assert fit.deviation == pytest.approx(ours, rel=0.02)
 
 
-def test_refinement_by_steps_comes_to_the_programs_optimum() -> None:
-    study = mirror_study(4)
+def base_study(join: str = "series") -> Study:
+    """Return a sum whose PTAT part alone is too much for some parts: no base current is left."""
+    open_slot = OpenSlot.model_validate({"pieces": 2, "join": join})
+    slots = {
+        "core": {"parts": [{"material": MENU["thin_film"], "value": 4500.0}]},
+        "base": open_slot,
+    }
+    return study_of({"topology": "ptat plus vbe", "area_ratio": (8.0,)}, slots)
+
+
+@pytest.mark.parametrize("join", ["series", "parallel"])
+@pytest.mark.parametrize(
+    ("study", "names"),
+    [
+        (mirror_study(4), ("silicide", "n_well", "p_base", "n_diffusion")),
+        (base_study(), ("silicide", "thin_film")),
+        (base_study(), ("thin_film", "n_well")),
+    ],
+    ids=["mirror", "base", "base far from what is needed"],
+)
+def test_refinement_by_steps_comes_to_the_programs_optimum(
+    study: Study, names: tuple[str, ...], join: str
+) -> None:
     room, band = room_and_band(study, OUTPUT)
-    offer = Offer(tuple(MENU[n] for n in ("silicide", "n_well", "p_base", "n_diffusion")), "series")
+    offer = Offer(tuple(MENU[name] for name in names), join)
     exact = best_silicon_fit(band, offer, room)
-    start = {"output": np.array([5e3, 3e2, 1e2, 1e2])}
-    steps = robust_fit(band.operation, {"output": offer}, start, room)
+    paper = best_fit(band, offer)
+    assert paper is not None
+    start = {band.slot: offer.coefficients(paper.operation.mixes[band.slot])}
+    steps = robust_fit(band.operation, {band.slot: offer}, start, room)
     assert exact is not None
     assert steps is not None
     assert steps.deviation == pytest.approx(exact.deviation, rel=0.015)
     assert steps.deviation >= exact.bound * (1 - 1e-3)
+    assert exact.bound == pytest.approx(exact.deviation, rel=0.01)
 
 
 def test_an_estimate_is_near_the_program_and_orders_offers_alike() -> None:
@@ -310,6 +334,18 @@ def test_the_figures_are_those_of_the_studys_yield_and_of_its_parts() -> None:
     boxes = drawn.sample.figures[-1, :, FIGURES.index("residual_box")] * 1e6
     # a tenth of the same parts lie above
     assert (boxes > silicon.figures[0].box_ppm_per_K).sum() == pytest.approx(102, abs=1)
+
+
+def test_no_band_at_the_deviation_to_give_up_at_is_no_proof() -> None:
+    room, band = room_and_band(base_study(), OUTPUT)
+    offer = Offer((MENU["silicide"], MENU["thin_film"]), "series")
+    fit = best_silicon_fit(band, offer, room)
+    assert fit is not None
+    for give_up in (1.01, 1.2, 2.0, 5.0):
+        again = silicon_outcome(band, offer, room, fit.points[1:], give_up * fit.deviation)
+        assert not again.ruled_out
+        assert again.fit is not None
+        assert again.fit.deviation == pytest.approx(fit.deviation, rel=0.01)
 
 
 def test_nothing_is_proven_where_the_output_warms_the_die() -> None:

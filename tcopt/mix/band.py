@@ -7,6 +7,7 @@ two edges are the needed resistances of the two currents at the edge.
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import pairwise
@@ -118,7 +119,13 @@ class Band:
             self._die[key] = self.operation.pinned_die_temperature(self.slot, output, temperature)
         return self._die[key]
 
-    def resistance(self, temperature: Array, off: ArrayLike, shift: ArrayLike = 0.0) -> Array:
+    def resistance(
+        self,
+        temperature: Array,
+        off: ArrayLike,
+        shift: ArrayLike = 0.0,
+        varied: Mapping[str, Array] | None = None,
+    ) -> Array:
         """Return the needed resistance [ohm] for the target times (1 + off).
 
         Parameters
@@ -126,13 +133,18 @@ class Band:
         temperature : [K], shape (n,)
         off, shift : deviation [1], and ``ln`` of input over the operation's own input [1]; for
             arrays of shape (..., 1) the result has shape (..., n)
+        varied : quantities of parts that are not typical, each a number or of shape (..., n)
 
         Not positive where even a short gives too little (or, where the output rises with the
         resistance, too much); inf where an open slot gives no less (or no more); nan where no
         resistance gives that current.
         """
         operation = self.operation
-        quantities = operation.quantities(self.die_temperature(temperature))
+        quantities = (
+            operation.quantities(self.die_temperature(temperature))
+            if varied is None
+            else dict(varied)
+        )
         if np.any(shift):
             quantities["I_given"] = quantities["I_given"] * np.exp(shift)
         output = self.target.current(temperature) * (1 + np.asarray(off))
@@ -142,7 +154,7 @@ class Band:
         # a need that passes infinity comes back from below zero: tell the two apart
         quantities[resistance_name(self.slot)] = np.asarray(NOTHING)
         opened = currents(operation.circuit, quantities)[operation.circuit.currents[-1]]
-        beyond = output >= opened if self._rises else output <= opened
+        beyond = output >= opened if self.rises else output <= opened
         return np.where((needed <= 0) & beyond, np.inf, needed)
 
     def edges(self, temperature: Array, join: str, e: float, shift: float = 0.0) -> Edges:
@@ -165,9 +177,17 @@ class Band:
         return self._known[key]
 
     def pair(
-        self, temperature: Array, join: str, e: ArrayLike, shift: ArrayLike = 0.0
+        self,
+        temperature: Array,
+        join: str,
+        e: ArrayLike,
+        shift: ArrayLike = 0.0,
+        varied: Mapping[str, Array] | None = None,
+        aim: ArrayLike = 1.0,
     ) -> tuple[Array, Array]:
-        """Return the two edges alone; e and shift as off and shift of `resistance`.
+        """Return the two edges alone; e and shift as off and shift of `resistance`, so varied.
+
+        ``aim`` scales the target about which the band lies, shape (..., 1).
 
         The lower edge is plus infinity, or the upper one not above 0, where no
         resistance at all lies in the band.
@@ -175,12 +195,13 @@ class Band:
         off = np.asarray(e, dtype=float)
         if off.ndim == 0:
             off = off.reshape((1,) * max(1, np.ndim(shift)))
-        more, less = self.resistance(temperature, np.stack([off, -off]), shift)
+        about = np.asarray(aim) * (1 + np.stack([off, -off]))
+        more, less = self.resistance(temperature, about - 1, shift, varied)
         # A current so large that nothing gives it is no edge; one so small is out of reach. Both
         # lie where the output is larger than any that the slot can make.
-        beyond = np.inf if self._rises else -np.inf
+        beyond = np.inf if self.rises else -np.inf
         more, less = (np.where(np.isnan(edge), beyond, edge) for edge in (more, less))
-        low, high = (less, more) if self._rises else (more, less)
+        low, high = (less, more) if self.rises else (more, less)
         if self.input_span is not None:
             scale = self.scale(shift)
             low, high = low / scale, high / scale
@@ -207,7 +228,7 @@ class Band:
         return np.array([(span.low + span.high) / 2])
 
     @cached_property
-    def _rises(self) -> bool:
+    def rises(self) -> bool:
         """Whether the output rises with this slot's resistance."""
         span = self.operation.study.range
         T = np.linspace(span.low, span.high, _SENSE_NODES)

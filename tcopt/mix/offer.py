@@ -39,6 +39,14 @@ class Offer:
         """Return what is linear in the coefficients: the resistance, or its inverse."""
         return resistance if self.join == "series" else 1 / resistance
 
+    def coefficients(self, mix: Mix) -> Array:
+        """Return the coefficients of a mix of these materials, shape (materials,)."""
+        values = {part.material.name: part.value for part in mix.parts}
+        each = np.array([values.get(material.name, 0.0) for material in self.materials])
+        if self.join == "series":
+            return each
+        return np.asarray(np.divide(1.0, each, out=np.zeros_like(each), where=each > 0))
+
     def mix(self, coefficients: Array) -> Mix:
         """Return the mix of these coefficients, without the parts that are not used."""
         from tcopt.study import Part  # noqa: PLC0415  keeps this layer below the gate

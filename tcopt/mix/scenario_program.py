@@ -6,9 +6,9 @@ See `tcopt.mix.silicon` for what it states and why it is exact.
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
-from functools import cached_property
 
 import numpy as np
+from numpy.typing import NDArray
 from scipy.optimize import linprog
 
 from tcopt.arrays import Array
@@ -20,17 +20,21 @@ from tcopt.mix.program import chebyshev_nodes
 from tcopt.mix.room import Room
 from tcopt.mix.worst import Worst, is_known, worst_points
 from tcopt.operation import Operation
-from tcopt.solve import currents, needed_resistance
+from tcopt.solve import currents
 from tcopt.symbols import resistance_name
 
-__all__ = ["Program", "Solved"]
+__all__ = ["FULL", "Program", "Solved"]
 
 _NODES = 13
 _FINE = 65
 _STEP = 1e-5
-_FULL = 1.002
+FULL = 1.002
+"""Parts of the area allowed that count as within it."""
 _WORTHLESS = 0.2
 """Deviation beyond which a design that fits into an area is none: its current is another."""
+_Flags = NDArray[np.bool_]
+_STANDS = 0.01
+"""Change of a scale of the output, in deviations, up to which it is taken to be settled."""
 _TYPICAL_WEIGHT = 3e-3
 """What the deviation of the typical part counts beside that of the worst: it settles ties."""
 
@@ -47,6 +51,16 @@ class Solved:
     bound: float
 
 
+_Line = tuple[Array, Array, Array, _Flags]
+"""An edge, its slopes by e and by u_k, and where it limits anything; shape (K, n) each."""
+
+
+def _line(edge: Array, by_e: Array, by_u: Array) -> _Line:
+    # an edge that is not there, or comes from infinity within the step, limits nothing
+    used = np.isfinite(edge) & np.isfinite(by_e) & np.isfinite(by_u)
+    return np.where(used, edge, 0.0), np.where(used, by_e, 0.0), np.where(used, by_u, 0.0), used
+
+
 class Program:
     """The scenario program of one band and one offer, and how far it has come.
 
@@ -58,7 +72,8 @@ class Program:
     ) -> None:
         span = band.operation.study.range
         knots = [k for k in band.target.knots if span.low < k < span.high]
-        self.band, self.offer, self.room = band, offer, room
+        self.band = band if band.input_span is None else replace(band, input_span=None)
+        self.offer, self.room = offer, room
         self.nodes = np.union1d(chebyshev_nodes(span.low, span.high, _NODES), knots)
         self.fine = np.union1d(np.linspace(span.low, span.high, _FINE), knots)
         self.points = np.zeros((1, room.causes.count))
@@ -122,75 +137,88 @@ class Program:
                 bounds.append(inverse if in_series else (slot.low, slot.high))
             elif output is not None:
                 low, high = max(1 / 3, c * output.low), min(3.0, c * output.high)
-                if in_series == self._rises:
+                if self._grows_with_output:
                     low, high = 1 / high, 1 / low
                 bounds.append((low, high) if low < high else (1.0, 1.0))
             else:
                 bounds.append((1.0, 1.0))
         return bounds
 
-    def _edges(self, e: Array) -> tuple[Array, Array]:
-        """Return the edges of the band in each scenario, in what is linear for the join.
+    @property
+    def _grows_with_output(self) -> bool:
+        """Whether what is linear for the join is larger for a larger output."""
+        return (self.offer.join == "series") == self.band.rises
 
-        Minus or plus infinity where the current reaches the edge with no resistance.
-        """
-        T, operation = self.nodes, self.band.operation
-        die = self.band.die_temperature(T)
-        quantities = self.room.causes.quantities(operation, self.points, die)
-        target = self.band.target.current(T) * self.output_scale[:, None]
-        above, below = (
-            needed_resistance(operation.circuit, self.band.slot, target * (1 + off), quantities)
-            for off in (e, -e)
+    @property
+    def _scales_output(self) -> bool:
+        """Whether u_k stands for a scale of the output, not of the slot."""
+        knobs = self.room.knobs
+        return knobs.of(self.band.slot) is None and knobs.output is not None
+
+    def _edges(self, e: Array, aim: Array) -> tuple[Array, Array]:
+        """Return the edges of the band in each scenario, as `Band.pair`, shape (..., K, n)."""
+        T, band = self.nodes, self.band
+        die = band.die_temperature(T)
+        quantities = self.room.causes.quantities(band.operation, self.points, die)
+        about = self.output_scale[:, None] * aim
+        return band.pair(T, self.offer.join, e, varied=quantities, aim=about)
+
+    def _lines(self, e: Array) -> tuple[_Line, _Line] | None:
+        """Return the lower and the upper edge to first order; None if there is no band."""
+        one = np.ones_like(e)
+        lows, highs = self._edges(
+            np.stack([e, e + _STEP, e - _STEP, e, e]),
+            np.stack([one, one, one, one + _STEP, one - _STEP]),
         )
-        if self._rises:
-            above, below = below, above
-        if self.offer.join == "series":
-            return above, below
-        with np.errstate(divide="ignore"):
-            return 1 / below, np.where(above > 0, 1 / above, np.inf)
-
-    @cached_property
-    def _rises(self) -> bool:
-        """Say whether the output rises with this slot's resistance."""
-        middle = self.nodes[len(self.nodes) // 2 : len(self.nodes) // 2 + 1]
-        up, down = self.band.resistance(middle, _STEP), self.band.resistance(middle, -_STEP)
-        return bool(up[0] > down[0])
+        low, high = lows[0], highs[0]
+        if not ((low < np.inf) & (high > 0)).all():
+            return None
+        with np.errstate(invalid="ignore"):
+            low_by_e = (lows[1] - lows[2]) / (2 * _STEP)
+            high_by_e = (highs[1] - highs[2]) / (2 * _STEP)
+            # what u_k does: to a slot's scale the edges are proportional, to the output's they
+            # are only where all the current goes through the slot
+            low_by_u, high_by_u = low, high
+            if self._scales_output:
+                sense = 1 if self._grows_with_output else -1
+                low_by_u = sense * (lows[3] - lows[4]) / (2 * _STEP)
+                high_by_u = sense * (highs[3] - highs[4]) / (2 * _STEP)
+        return _line(low, low_by_e, low_by_u), _line(high, high_by_e, high_by_u)
 
     def solve(self) -> Solved | None:
-        """Solve the program linearised about the present e and scales; None if nothing fits."""
+        """Solve the program linearised about the present e and scales; None if nothing fits there.
+
+        That is no proof that nothing fits at a larger e, nor at other scales.
+        """
         e = np.full((len(self.points), 1), self.e)
         e[0] = self.typical
-        low, high = self._edges(e)
-        if not (np.isfinite(low).all() and (high > 0).all()):
+        lines = self._lines(e)
+        if lines is None:
             return None
-        (low_up, high_up), (low_down, high_down) = self._edges(e + _STEP), self._edges(e - _STEP)
-        with np.errstate(invalid="ignore"):
-            low_by_e = (low_up - low_down) / (2 * _STEP)
-            high_by_e = (high_up - high_down) / (2 * _STEP)
-        bounded = np.isfinite(high) & np.isfinite(high_by_e)
+        (low, low_by_e, _, _), (high, high_by_e, _, _) = lower, upper = lines
         columns = self._columns(self.nodes)
         K, n_nodes, n = columns.shape
-        size = float(np.median(np.abs(low)))
+        counted = next((edge[edge > 0] for edge in (low, high) if (edge > 0).any()), np.ones(1))
+        size = float(np.median(counted))
         which = self._trimmed_part
         moving = K if which is not None else 0
         width = n + K + moving + 2
-        scale = self.scale[:, None]
-        per_e = np.abs(low_by_e) * scale * self.unit  # rows count in units of e
+        scale = np.ones_like(e) if self._scales_output else self.scale[:, None]
+        slope = np.where(low_by_e == 0, np.abs(high_by_e), np.abs(low_by_e))
+        # rows count in units of e
+        per_e = np.where(slope == 0, 1.0, slope) * scale * self.unit
         every = np.arange(K)
         deviation = np.where(every == 0, width - 2, width - 1)
         matrix, sides = [], []
-        for sign, edge, by_e, used in (
-            (1, np.where(bounded, high, 0.0), np.where(bounded, high_by_e, 0.0), bounded),
-            (-1, low, low_by_e, np.full(low.shape, True)),
-        ):
+        for sign, (edge, by_e, by_u, used) in ((1, upper), (-1, lower)):
             rows = np.zeros((K, n_nodes, width))
             rows[:, :, :n] = sign * columns * size
-            rows[every, :, n + every] = -sign * edge
+            rows[every, :, n + every] = -sign * by_u
             if which is not None:
                 rows[every, :, n + K + every] = sign * columns[:, :, which] * size
             rows[every, :, deviation] = -sign * by_e * scale * self.unit
             matrix.append((rows / per_e[..., None])[used])
-            sides.append((-sign * by_e * scale * e / per_e)[used])
+            sides.append((sign * (edge - by_u - by_e * scale * e) / per_e)[used])
         for rows, side in self._extra_rows(width, n, K, size):
             matrix.append(rows)
             sides.append(side)
@@ -236,6 +264,10 @@ class Program:
             found.append((np.append(row * size, np.zeros(width - n))[None, :], np.array([side])))
         return found
 
+    def stands(self, solved: Solved) -> bool:
+        """Say whether a scale of the output, about which the band is taken, is what it was."""
+        return not self._scales_output or bool(np.abs(solved.scale - 1).max() < _STANDS * self.e)
+
     def cut_off(self, parts: Array) -> bool:
         """Cut off a mix that takes more than the area allowed; False if it does not.
 
@@ -246,7 +278,7 @@ class Program:
         if self.whole or not room.is_limited:
             return False
         vanishing = self.offer.join == "parallel" and bool((parts <= 0).any())
-        if not vanishing and room.area(self.offer, parts) <= _FULL * room.area_limit:
+        if not vanishing and room.area(self.offer, parts) <= FULL * room.area_limit:
             return False
         self.cuts.append(np.maximum(parts, 1e-3 * parts.max()))
         return True

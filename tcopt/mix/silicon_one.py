@@ -17,10 +17,10 @@ from scipy.optimize import minimize_scalar
 from tcopt.arrays import Array
 from tcopt.mix.band import Band
 from tcopt.mix.offer import Offer, offers, whole_offers
-from tcopt.mix.program import Fit
+from tcopt.mix.program import Fit, best_fit
 from tcopt.mix.room import Room
 from tcopt.mix.screen import Estimate, screened
-from tcopt.mix.silicon import SiliconFit, best_silicon_fit
+from tcopt.mix.silicon import SiliconFit, best_silicon_fit, silicon_outcome
 from tcopt.mix.single import Best, Group
 from tcopt.study import OpenSlot
 
@@ -59,14 +59,21 @@ def search_one_slot_for_silicon(
     bound, worst = np.inf, None
     usable = []
     for case in cases:
+        wholes = whole_offers(slot)
         reached = [
-            best_silicon_fit(case.band, whole, room, worst, bound, whole=True)
-            for whole in whole_offers(slot)
+            silicon_outcome(case.band, whole, room, worst, bound, whole=True) for whole in wholes
         ]
-        found = [fit for fit in reached if fit is not None]
+        found = [outcome.fit for outcome in reached if outcome.fit is not None]
         if found:
             least = min(found, key=lambda fit: fit.bound)
             bound, worst = min(bound, least.bound), least.points[1:]
+        # of a program that has no solution only this is sure: there may be mixes all the same
+        unknown = [
+            best_fit(case.band, whole) is not None
+            for whole, outcome in zip(wholes, reached, strict=True)
+            if outcome.fit is None and not outcome.ruled_out
+        ]
+        bound = 0.0 if any(unknown) else bound
         if found or np.isfinite(bound):
             usable.append(case)
     queue = [(estimate, case) for case in usable for estimate in case.estimates_of(allowed, room)]
@@ -83,12 +90,13 @@ def search_one_slot_for_silicon(
         elif case.rules_out(offer, slot, room, worst, give_up):
             best.skipped += 1
             continue
-        fit = best_silicon_fit(case.band, offer, room, points, give_up)
+        outcome = silicon_outcome(case.band, offer, room, points, give_up)
+        fit = outcome.fit
         if fit is None:
             best.skipped += 1
             # in parallel, the fewer the parts the less the area
             nested = not (room.is_limited and offer.join == "parallel")
-            if np.isfinite(give_up) and not alone and nested:
+            if outcome.ruled_out and not alone and nested:
                 case.ruled_out.append(offer)
             continue
         if alone and (single is None or fit.deviation < single.deviation):
@@ -128,9 +136,9 @@ class _Case:
         if np.isfinite(give_up) and not self.whole_tried:
             self.whole_tried = True
             for whole in whole_offers(slot):
-                if best_silicon_fit(
+                if silicon_outcome(
                     self.band, whole, room, points, give_up, try_once=True, whole=True
-                ) is None:  # fmt: skip
+                ).ruled_out:  # fmt: skip
                     self.ruled_out.append(whole)
         return any(_within(offer, other) for other in self.ruled_out)
 

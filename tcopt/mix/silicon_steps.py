@@ -62,11 +62,7 @@ def search_one_slot_by_steps(
         start = best_fit(band, estimate.offer)
         if start is None:
             continue
-        mix = start.operation.mixes[band.slot]
-        by_name = {part.material.name: part.value for part in mix.parts}
-        values = np.array([by_name.get(m.name, 0.0) for m in estimate.offer.materials])
-        if estimate.offer.join == "parallel":
-            values = np.divide(1.0, values, out=np.zeros_like(values), where=values > 0)
+        values = estimate.offer.coefficients(start.operation.mixes[band.slot])
         span = groups[number].input_span
         fit = robust_fit(
             band.operation, {band.slot: estimate.offer}, {band.slot: values}, room, span,

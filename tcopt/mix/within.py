@@ -119,6 +119,10 @@ def search_within(
         # current off its target gives the die
         free = any(span is not None for _, span in question.groups)
         warms = bool(question.study.range.thermal_resistance)
+        if least <= 0:
+            # nothing but that no deviation is below zero
+            least = min((fit.deviation for fit in best.ranked()), default=np.inf)
+            return best, single, Bound(least, proven=False)
         return best, single, Bound(least, proven=room.knobs.is_linear and not free and not warms)
     best, single, least = search_one_slot_by_steps(groups, slot, room, keep, progress)
     return best, single, Bound(least, proven=False)
