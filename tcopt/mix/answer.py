@@ -9,7 +9,7 @@ import numpy as np
 from numpy.polynomial import Chebyshev
 
 from tcopt.arrays import Array
-from tcopt.assess import Assessment, assess
+from tcopt.assess import Assessment, Verdict, assess
 from tcopt.circuits import CIRCUITS
 from tcopt.design import Bound, DesignResult, FrontPoint, NeededPoint, PlainMirror
 from tcopt.devices import diode_voltage
@@ -24,8 +24,8 @@ from tcopt.operation import Mix, Operation
 from tcopt.study import Span
 
 __all__ = [
-    "SPARE", "SPARE_WITH_SIZES", "answer", "different", "finished", "needed_point", "plain_mirror",
-    "rounded", "what_is_made",
+    "SPARE", "SPARE_WITH_SIZES", "answer", "different", "finished", "misses", "needed_point",
+    "plain_mirror", "rounded", "what_is_made",
 ]  # fmt: skip
 
 SPARE = 5
@@ -39,6 +39,8 @@ def finished(
     question: Question, fits: Iterable[Fit], *, keep_shape: bool = False
 ) -> list[Assessment]:
     """Return designs with values that can be made, from the full solution, best first.
+
+    Those that meet the study's limit come before those that do not.
 
     Parameters
     ----------
@@ -62,8 +64,13 @@ def finished(
             failure = failure or error
     if failure is not None and not found and question.study.layout is not None:
         raise failure
-    found.sort(key=lambda item: item.residual_drift.deviation_ppm)
+    found.sort(key=lambda item: (misses(item.limit), item.residual_drift.deviation_ppm))
     return different(found)
+
+
+def misses(limit: Verdict | None) -> bool:
+    """Say whether there is a limit that is not met."""
+    return limit is not None and not limit.met
 
 
 def what_is_made(found: Assessment) -> tuple[object, ...]:

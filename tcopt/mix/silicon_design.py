@@ -11,7 +11,7 @@ from collections.abc import Sequence
 from tcopt.assess import Assessment
 from tcopt.design import DesignResult, FrontPoint
 from tcopt.errors import InputError
-from tcopt.mix.answer import SPARE, answer, different, finished, what_is_made
+from tcopt.mix.answer import SPARE, answer, different, finished, misses, what_is_made
 from tcopt.mix.area import front_of, smallest_design
 from tcopt.mix.made import area_of
 from tcopt.mix.paper import search_groups
@@ -30,7 +30,8 @@ def design_for_silicon(question: Question, progress: Progress | None = None) -> 
     """Return the best designs for silicon, ranked by their drift over the parts of a factory.
 
     The best design on paper and the best single material are among those that are
-    ranked, so that neither ever does better than the winner.
+    ranked, so that neither ever does better than the winner. Those that meet the study's
+    limit come first.
 
     Raises
     ------
@@ -78,7 +79,7 @@ def design_for_silicon(question: Question, progress: Progress | None = None) -> 
         compared.append(Compared(each, silicon_figures(each)))
         if report is not None:
             report(done + 1, len(pool))
-    compared.sort(key=lambda each: each.silicon.box_ppm_per_K)
+    compared.sort(key=lambda each: (misses(each.silicon.limit), each.silicon.box_ppm_per_K))
     shown = compared[:keep]
     silicon = SiliconResult(
         sigma=room.sigma,
