@@ -59,6 +59,7 @@ class Numerics:
     closed_form, needs : with ideal transistors
     real : with all others
     ideal : the same circuit with ideal transistors, where it can have them
+    rests_at_zero : the loops also hold next to no current
     """
 
     device: str
@@ -70,6 +71,7 @@ class Numerics:
     needs: Mapping[str, Callable[..., Any]]
     real: Real | None
     ideal: Numerics | None
+    rests_at_zero: bool
 
     @property
     def followed(self) -> bool:
@@ -96,6 +98,7 @@ def numerics(topology: str, feed: str, device: str = IDEAL) -> Numerics:
         MappingProxyType(getattr(made, "NEEDS", {})),
         None if device == IDEAL else _real(made),
         numerics(topology, feed) if has_ideal else None,
+        circuit.rests_at_zero,
     )
 
 

@@ -126,7 +126,9 @@ def _rescue(circuit: Numerics, system: newton.System, start: newton.Start) -> Re
         fit = voltages_fit(circuit, block, found)
         if np.all(fit):
             return fit
-        wrong = np.flatnonzero(~fit)
+        wrong = np.flatnonzero(~fit if circuit.rests_at_zero else np.isnan(found[0]))
+        if wrong.size == 0:
+            return fit
         some = newton.taken(block, wrong)
         again = careful(system, some, fine(some), wrong.size)
         there = np.isfinite(again[0])
