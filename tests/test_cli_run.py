@@ -131,8 +131,13 @@ def test_an_interrupted_design_leaves_nothing_behind(first: Path) -> None:
     slow = first / "first" / "slow.toml"
     many = ", ".join(str(1 + k / 50) for k in range(250))
     slow.write_text(text.replace("[1, 2, 4, 8]", f"[{many}]").replace("pieces = 2", "pieces = 4"))
+    # a process that was started in the background may have been told to ignore the signal
+    heeds = (
+        "import signal, sys; signal.signal(signal.SIGINT, signal.default_int_handler); "
+        "from tcopt.cli import main; sys.argv[0] = 'tcopt'; main()"
+    )
     process = subprocess.Popen(
-        [*TCOPT, "design", "first/slow.toml", "--out", "interrupted"],
+        [sys.executable, "-c", heeds, "design", "first/slow.toml", "--out", "interrupted"],
         cwd=first,
         env=_environment(),
         stdout=subprocess.PIPE,

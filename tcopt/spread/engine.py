@@ -177,10 +177,12 @@ class _Gathering:
             self._add(self._early[number])
         if self._sums is None:
             raise AssertionError("no block is finished")
-        samples, current = self.plan.spread.samples, self._current.astype(float)
+        samples = self.plan.spread.samples
         if self._done.all():
+            current = self._current.astype(float)
             return Sample(samples, "", self._figures, tuple(self._settings), self._sums, current)
         there = np.repeat(self._done, BLOCK)[:samples]
         settings = tuple(Setting(s.scale[there], s.beyond[there]) for s in self._settings)
-        current = current[:, there[: current.shape[1]]]
+        # what no block has filled may hold anything: it is left out before it is converted
+        current = self._current[:, there[: self._current.shape[1]]].astype(float)
         return Sample(samples, stopped, self._figures[:, there], settings, self._sums, current)
