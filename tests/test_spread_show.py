@@ -340,6 +340,9 @@ from contextlib import contextmanager
 from tcopt import cli
 from tcopt.show import progress as shown
 
+# a process that was started in the background may have been told to ignore the signal
+signal.signal(signal.SIGINT, signal.default_int_handler)
+
 @contextmanager
 def interrupting(words):
     def report(done, total):
