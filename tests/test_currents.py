@@ -111,7 +111,6 @@ def test_arrays_of_different_shape_are_broadcast() -> None:
 def test_sensitivities(topology: str, feed: str) -> None:
     circuit = numerics(topology, feed)
     for row in solved(topology, feed)[::22]:
-        solution = currents(circuit, row.floats)
         for of, exact in oracle.log_sensitivities(topology, feed, row.floats).items():
             found = sensitivities(circuit, row.floats, of)
             assert found.keys() == exact.keys()
