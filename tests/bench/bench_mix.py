@@ -66,7 +66,7 @@ class Rival:
         study = self.study
         slot = study.resistors["output"]
         if not isinstance(slot, OpenSlot):
-            raise AssertionError("the first study has its output resistor to design")
+            raise TypeError("the first study has its output resistor to design")
         self.offer = Offer(slot.materials, "series")
         self.operation = Operation(study, Choices(input_current=100e-6))
         self.target = target_current(study.target, study.range.reference)
