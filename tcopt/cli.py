@@ -261,9 +261,9 @@ def design(study: StudyFile, as_json: Json = False, out: Out = None) -> None:
     """Find the resistors and ratios that come closest to the target.
 
     The input current, too, where it is left open. Shows the best designs beside the bound that
-    no mix of the menu can beat. With --out the best one is written as a finished study,
-    winner.toml, which check reads. Several outputs of one reference branch, in tables
-    [outputs.NAME], are designed and solved together.
+    no mix of the menu, joined as the study allows, can beat. With --out the best one is written
+    as a finished study, winner.toml, which check reads. Several outputs of one reference branch,
+    in tables [outputs.NAME], are designed and solved together.
     """
     from tcopt.mix import search  # noqa: PLC0415
     from tcopt.show.progress import progress  # noqa: PLC0415

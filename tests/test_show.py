@@ -215,7 +215,7 @@ def test_titles_are_shown_as_they_are_written() -> None:
 
 def test_the_bound_is_said_with_or_without_proof() -> None:
     result = first_design()
-    assert bound_sentence(result).startswith("No mix of this menu, of however many pieces, can")
+    assert bound_sentence(result).startswith("No series mix of this menu, of however")
     guess = replace(result, bound=Bound(result.bound.deviation, proven=False))
     assert bound_sentence(guess).endswith("there is no proof that nothing comes closer.")
     settled = replace(result, needed={})

@@ -31,6 +31,8 @@ __all__ = [
 SPARE = 5
 """Designs assessed beyond those shown, since rounding may change their order."""
 SPARE_WITH_SIZES = 15
+_REACH = 10.0
+"""Kelvin to either side of the reference over which the need is followed."""
 _STEPS = 10
 """Steps to the range's temperature at which the die has the reference's; each gains digits."""
 
@@ -201,8 +203,10 @@ def needed_point(found: Assessment, slot: str) -> NeededPoint:
     at = reference
     for _ in range(_STEPS):
         at -= float(die(np.array([at]))[0]) - reference
-    reach = 10.0
-    R, own = (Chebyshev.interpolate(f, 10, domain=[at - reach, at + reach]) for f in (need, die))
+    # within the range, beyond which a target that is a table says nothing
+    span = operation.study.range
+    domain = [max(span.low, at - _REACH), min(span.high, at + _REACH)]
+    R, own = (Chebyshev.interpolate(f, 10, domain=domain) for f in (need, die))
     value, rise = float(R(at)), float(own.deriv(1)(at))
     slope = float(R.deriv(1)(at)) / rise
     bend = (float(R.deriv(2)(at)) - slope * float(own.deriv(2)(at))) / rise**2

@@ -62,7 +62,9 @@ class Fit:
 
 def chebyshev_nodes(low: float, high: float, count: int) -> Array:
     """Return `count` temperatures [K], ends included, dense towards the ends."""
-    return np.asarray((low + high) / 2 - (high - low) / 2 * np.cos(np.linspace(0, np.pi, count)))
+    nodes = (low + high) / 2 - (high - low) / 2 * np.cos(np.linspace(0, np.pi, count))
+    nodes[0], nodes[-1] = low, high  # to the last bit: a target's table may end just there
+    return np.asarray(nodes)
 
 
 def best_fit(band: Band, offer: Offer) -> Fit | None:

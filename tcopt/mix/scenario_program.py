@@ -35,6 +35,8 @@ _WORTHLESS = 0.2
 _Flags = NDArray[np.bool_]
 _STANDS = 0.01
 """Change of a scale of the output, in deviations, up to which it is taken to be settled."""
+_SETTLING = 0.75
+"""Share of e by which a bound may fall while scales settle; 0.57 is the most that was seen."""
 _TYPICAL_WEIGHT = 3e-3
 """What the deviation of the typical part counts beside that of the worst: it settles ties."""
 
@@ -264,9 +266,18 @@ class Program:
             found.append((np.append(row * size, np.zeros(width - n))[None, :], np.array([side])))
         return found
 
-    def stands(self, solved: Solved) -> bool:
-        """Say whether a scale of the output, about which the band is taken, is what it was."""
-        return not self._scales_output or bool(np.abs(solved.scale - 1).max() < _STANDS * self.e)
+    def doubt(self, solved: Solved) -> float:
+        """Return by what share of e the bound may be too high at the scales that came out.
+
+        It is linearised about the scales of the output that were known before. Where they
+        stand it is sure. Else its error goes with the square of the distance from them, and
+        on top of it comes what the bound was seen to fall by while they settled, where only a
+        part of the current goes through the slot.
+        """
+        if not self._scales_output:
+            return 0.0
+        distance = float(np.abs(solved.scale - 1).max())
+        return 0.0 if distance < _STANDS * self.e else _SETTLING + 2 * distance**2 / self.e
 
     def cut_off(self, parts: Array) -> bool:
         """Cut off a mix that takes more than the area allowed; False if it does not.

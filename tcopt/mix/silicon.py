@@ -119,7 +119,7 @@ def silicon_outcome(
         for _ in range(_SCALINGS):
             if solved is None or solved.bound <= give_up:
                 break
-            if program.stands(solved):
+            if solved.bound > give_up * (1 + program.doubt(solved)):
                 return Outcome(None, ruled_out=True)
             solved = program.solve() if program.off(solved) is not None else None
         if try_once:

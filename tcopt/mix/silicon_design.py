@@ -23,7 +23,8 @@ __all__ = ["design_for_silicon"]
 
 _PAPER, _SEARCH, _DRAWN = 0.25, 0.7, 0.85
 """Shares of the work after which the paper search, the search, the sampling are done."""
-_KEPT_ON_PAPER = 1
+_KEPT_ON_PAPER = 6
+"""Best designs on paper that the search for silicon starts from and compares with."""
 
 
 def design_for_silicon(question: Question, progress: Progress | None = None) -> DesignResult:
@@ -49,11 +50,9 @@ def design_for_silicon(question: Question, progress: Progress | None = None) -> 
             "for = 'paper'"
         )
     keep = study.search.show
-    few = study.search.model_copy(update={"show": _KEPT_ON_PAPER})
-    paper_best, paper_bound = search_groups(
-        study.model_copy(update={"search": few}), question.groups, portion(progress, 0, _PAPER)
-    )
-    on_paper = finished(question, paper_best.ranked()[: _KEPT_ON_PAPER + SPARE])
+    # as many as a search for paper keeps: near ties among them are only told apart once rounded
+    paper_best, paper_bound = search_groups(study, question.groups, portion(progress, 0, _PAPER))
+    on_paper = finished(question, paper_best.ranked()[: keep + SPARE])[:_KEPT_ON_PAPER]
     if not on_paper:
         return answer(question, on_paper, paper_best, paper_bound)
     limit = layout.area_limit if layout is not None else None

@@ -6,6 +6,8 @@ import os
 import sys
 from typing import TYPE_CHECKING, Any
 
+from tcopt.errors import InputError
+
 if TYPE_CHECKING:
     from rich.console import Console, RenderableType
 
@@ -33,9 +35,14 @@ def say(text: str) -> None:
     try:
         sys.stdout.write(text)
         sys.stdout.flush()
-    except BrokenPipeError:
-        # so that the interpreter's own flush on the way out meets no closed pipe
+    except OSError as error:
+        # so that the interpreter's own flush on the way out does not meet it again
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        if not isinstance(error, BrokenPipeError):
+            raise InputError(
+                f"standard output: found {error.strerror or error}; accepted: one that can be "
+                "written to"
+            ) from None
 
 
 def say_report(report: RenderableType) -> None:

@@ -13,8 +13,8 @@ if TYPE_CHECKING:
     from tcopt.study import Study
 
 __all__ = [
-    "DEFINITIONS", "circuit_words", "figure_words", "limit_words", "mix_words", "number",
-    "range_words", "target_words", "verdict_words",
+    "DEFINITIONS", "circuit_words", "figure_words", "limit_words", "menu_words", "mix_words",
+    "number", "range_words", "target_words", "verdict_words",
 ]  # fmt: skip
 
 DEFINITIONS = {
@@ -24,6 +24,17 @@ DEFINITIONS = {
     "slope": ("ppm/K", "(dI/dT)/I at T_ref"),
 }
 """Each figure of drift: its unit and its definition."""
+
+
+def menu_words(study: Study) -> str:
+    """Return what a bound is of: the mixes that the open slots may be joined to."""
+    from tcopt.study import OpenSlot  # noqa: PLC0415  slow to import, and loaded by then
+
+    joins = {slot.join for slot in study.resistors.values() if isinstance(slot, OpenSlot)}
+    if len(joins) != 1:
+        return "mix of this menu, joined as the study allows,"
+    (join,) = joins
+    return "series or parallel mix of this menu" if join == "either" else f"{join} mix of this menu"
 
 
 def number(value: float, digits: int = 4, *, signed: bool = False) -> str:

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from matplotlib.figure import Figure
 
+from tcopt.circuits import SUPPLY
 from tcopt.show.plots.labels import Label, place
 from tcopt.show.plots.style import (
     BLUE,
@@ -97,7 +98,9 @@ def _findings(result: CheckResult, need: Headroom) -> list[str]:
             continue
         words = f"{name} needs {limit.voltage:.3f} V at {format_quantity(limit.temperature, 'K')}"
         if given is not None:
-            words += " and has it" if given >= limit.voltage else f", more than its {given:.4g} V"
+            fed = name == "the supply" and result.study.circuit.feed == SUPPLY
+            enough = " without the drop of its feed" if fed else " and has it"
+            words += enough if given >= limit.voltage else f", more than its {given:.4g} V"
         found.append(words)
     return found
 

@@ -18,7 +18,7 @@ from tcopt.show.tables.made import (
     square_micrometres,
 )
 from tcopt.show.tables.parts import PPM, heading, listed, new_table, ppm, row, verdict
-from tcopt.show.words import mix_words, number, range_words, target_words
+from tcopt.show.words import menu_words, mix_words, number, range_words, target_words
 from tcopt.traps import warnings_for
 from tcopt.units import format_quantity
 
@@ -86,8 +86,8 @@ def bound_sentence(result: DesignResult) -> str:
         beside += f", {number(max(best / bound, 1.0), 3)} times that"
     if result.bound.proven:
         return (
-            f"No mix of this menu, of however many pieces, can keep the current closer to its "
-            f"target than {number(bound)} ppm everywhere in the range; {beside}."
+            f"No {menu_words(result.study)}, of however many pieces, can keep the current closer "
+            f"to its target than {number(bound)} ppm everywhere in the range; {beside}."
         )
     return (
         f"The closest that a search over the whole menu, with however many pieces, came to the "

@@ -10,6 +10,7 @@ from rich.console import RenderableType
 from rich.table import Table
 from rich.text import Text
 
+from tcopt.circuits import SUPPLY
 from tcopt.show.tables.parts import heading, new_table, row
 from tcopt.show.words import number
 from tcopt.units import format_quantity
@@ -99,6 +100,11 @@ def _headroom(result: CheckResult, found: Headroom, places: Sequence[str]) -> li
         notes.append(
             f"Lowest {what}{_given(made.supply)}: {limit.voltage:.3f} V, for {limit.set_by} at "
             f"{format_quantity(limit.temperature, 'K')}."
+        )
+    if limit is not None and made.feed == SUPPLY:
+        notes.append(
+            "There the feed resistor has no drop left and carries no current; the output follows "
+            "the supply long before, as its sensitivity says."
         )
     if limit is not None and not found.complete:
         notes.append(

@@ -8,7 +8,7 @@ from rich.console import RenderableType
 from rich.text import Text
 
 from tcopt.show.tables.parts import PPM, heading, new_table, row
-from tcopt.show.words import limit_words, mix_words, number
+from tcopt.show.words import limit_words, menu_words, mix_words, number
 from tcopt.units import format_quantity
 
 if TYPE_CHECKING:
@@ -62,7 +62,7 @@ def silicon_section(result: DesignResult) -> list[RenderableType]:
         heading("What silicon makes of it"),
         table,
         Text(_explained(silicon)),
-        Text(_bounded(silicon)),
+        Text(_bounded(silicon, menu_words(result.study))),
         *_verdict(silicon),
     ]
 
@@ -91,12 +91,12 @@ def _explained(silicon: SiliconResult) -> str:
     )
 
 
-def _bounded(silicon: SiliconResult) -> str:
+def _bounded(silicon: SiliconResult, menu: str) -> str:
     bound = f"{number(PPM * silicon.bound.deviation)} ppm"
     trimmed = "trimmed" if silicon.trimmed else "its value set right"
     if silicon.bound.proven:
         return (
-            f"No mix of this menu, of however many pieces, keeps every part within "
+            f"No {menu}, of however many pieces, keeps every part within "
             f"{silicon.sigma:g} sigma, {trimmed}, closer to the target than {bound}."
         )
     return (
